@@ -158,7 +158,6 @@ pub struct SpeciesRecord {
     pub formation: Option<Formation>,
     #[serde(default)]
     pub curve: Option<Curve>,
-    /// Key into `gas_solubility` curves when the temperature dependence of a neutral solute follows its gas.
     #[serde(default)]
     pub ion_class: Option<IonClass>,
     /// Constituents when the rules of oxidation numbers do not settle them: `{ "Fe+2" = 1, "Fe+3" = 2, "O-2" = 4 }`.

@@ -1,0 +1,106 @@
+//! Every couple's Nernst potential in a liquor whose oxidation states are kept apart.
+
+use crate::chemistry::Element;
+use crate::library::tables::InertRecord;
+use crate::quantity::{Estimate, FARADAY};
+
+use super::liquor::Liquor;
+use super::states::{self, Basis, StateForm};
+
+/// Share of the oxidised total that an absent reduced partner is taken to have reached, and the other way round: a tenth
+/// of the reagent used.
+pub const ASSUMED_SHARE: f64 = 0.1;
+/// Least total of an absent partner, mol/kg.
+pub const ASSUMED_LEAST: f64 = 1e-6;
+
+/// A couple with its potential in the liquor.
+#[derive(Debug, Clone)]
+pub struct Couple {
+    pub oxidised: StateForm,
+    pub reduced: StateForm,
+    /// Electrons per atom of the element that changes.
+    pub electrons: f64,
+    /// V against SHE.
+    pub potential: Estimate,
+}
+
+/// Potential of a couple of two states of one element, V against SHE:
+/// E = (μ(oxidised) − μ(reduced))/(nF) + μ(e⁻)/F per atom, with the electron that keeps E(H⁺/H₂) = 0.
+pub fn couple(liquor: &Liquor, oxidised: StateForm, reduced: StateForm) -> Couple {
+    let electrons = oxidised.oxidation() - reduced.oxidation();
+    let thermal = liquor.temperature().rt() / FARADAY;
+    let value = thermal * (oxidised.potential - reduced.potential) / electrons + liquor.gibbs.electron() / FARADAY;
+    let spread = form_spread(liquor, &oxidised).hypot(form_spread(liquor, &reduced));
+    let potential = Estimate::new(value, thermal * spread / electrons);
+    Couple { oxidised, reduced, electrons, potential }
+}
+
+/// Standard uncertainty of a form's potential per atom, units of RT: data, temperature and activity models, and the decade
+/// either way (rectangular) of an assumed total.
+pub fn form_spread(liquor: &Liquor, form: &StateForm) -> f64 {
+    let species = liquor.library.get(form.leading);
+    let count: f64 = species.constituents.iter().filter(|(c, _)| *c == form.constituent).map(|(_, n)| n).sum();
+    let data = liquor.gibbs.of(form.leading).standard_uncertainty / liquor.temperature().rt() / count.max(1.0);
+    let activity = match form.basis {
+        Basis::Liquor | Basis::Assumed(_) => {
+            liquor.activity_model.ln_gamma_uncertainty(species.formula.charge, liquor.ionic_strength) / count.max(1.0)
+        }
+        Basis::Condensed | Basis::Gas(_) => 0.0,
+    };
+    let assumed = match form.basis {
+        Basis::Assumed(_) => std::f64::consts::LN_10 / 3f64.sqrt() / count.max(1.0),
+        _ => 0.0,
+    };
+    data.hypot(activity).hypot(assumed)
+}
+
+/// All couples of `element` with at least one state in the liquor, highest potential first.
+pub fn couples_of(liquor: &Liquor, element: Element) -> Vec<Couple> {
+    let states = states::states_of(liquor, element);
+    let held: Vec<f64> = states.iter().map(|s| liquor.total(s)).collect();
+    let present: Vec<bool> = states.iter().map(|s| liquor.potential(s).is_some()).collect();
+    let form = |i: usize, partner: usize| {
+        // Hydrogen leaves as gas at 1 bar, the convention of the trade for E(H⁺/H₂).
+        if element.symbol() == "H" && states[i].oxidation() == 0.0 {
+            return states::gaseous(liquor, &states[i], 1.0);
+        }
+        let assumed = (ASSUMED_SHARE * held[partner]).max(ASSUMED_LEAST);
+        states::in_liquor(liquor, &states[i], assumed)
+    };
+    let mut couples = Vec::new();
+    for low in 0..states.len() {
+        for high in low + 1..states.len() {
+            if !(present[low] || present[high]) {
+                continue;
+            }
+            if let (Some(oxidised), Some(reduced)) = (form(high, low), form(low, high)) {
+                couples.push(couple(liquor, oxidised, reduced));
+            }
+        }
+    }
+    couples.sort_by(|a, b| b.potential.value.total_cmp(&a.potential.value));
+    couples
+}
+
+/// The kinetic record that holds a couple back at the liquor's conditions, if any. `against` names the reductant.
+pub fn held_back<'l>(liquor: &Liquor<'l>, couple: &Couple, against: Option<&str>) -> Option<&'l InertRecord> {
+    let library = liquor.library;
+    let celsius = liquor.temperature().celsius();
+    let holds_state = |formula: &str, form: &StateForm| {
+        formula == "*"
+            || library.records(formula).iter().any(|s| s.constituents.iter().any(|(c, _)| *c == form.constituent))
+    };
+    library.kinetics.inert.iter().find(|record| {
+        let escaped = record.temperature_above_c.is_some_and(|t| celsius > t)
+            || record.ph_below.is_some_and(|ph| liquor.ph() < ph)
+            || record.ph_above.is_some_and(|ph| liquor.ph() > ph);
+        let special = match against {
+            Some(name) => record.against.is_empty() || record.against.iter().any(|a| a == name),
+            None => record.against.is_empty(),
+        };
+        !escaped
+            && special
+            && holds_state(&record.oxidised, &couple.oxidised)
+            && record.reduced.iter().any(|r| holds_state(r, &couple.reduced))
+    })
+}
