@@ -92,10 +92,9 @@ impl<'l> Liquor<'l> {
         let gibbs = GibbsTable::at(library, t)?;
         let water = library.in_state("H2O", State::Liquid).ok_or(LiquorError::Lacks("liquid water"))?.id;
         let proton = library.in_state("H^+", State::Aqueous).ok_or(LiquorError::Lacks("the hydrogen ion"))?.id;
-        let solvent = |ln_water_activity: f64| Solvent {
-            hydrogen: gibbs.of(proton).value / t.rt() - recipe.ph * std::f64::consts::LN_10,
-            water: gibbs.of(water).value / t.rt() + ln_water_activity,
-        };
+        let hydrogen = gibbs.of(proton).value / t.rt() - recipe.ph * std::f64::consts::LN_10;
+        let pure_water = gibbs.of(water).value / t.rt();
+        let solvent = move |ln_water_activity: f64| Solvent { hydrogen, water: pure_water + ln_water_activity };
         let setup = set_up(library, &recipe, &gibbs, &solvent(0.0))?;
         let coefficients = ActivityCoefficients::new(library, &setup.species, t)?;
         let mut state = Iterate::new(&setup, library);
@@ -168,9 +167,9 @@ struct Solvent {
 
 impl Solvent {
     fn of(&self, constituent: &Constituent) -> Option<f64> {
-        match constituent.to_string().as_str() {
-            "H+1" => Some(self.hydrogen),
-            "O-2" => Some(self.water - 2.0 * self.hydrogen),
+        match state_of(constituent) {
+            ("H", 1000) => Some(self.hydrogen),
+            ("O", -2000) => Some(self.water - 2.0 * self.hydrogen),
             _ => None,
         }
     }
@@ -183,7 +182,15 @@ impl Solvent {
 
 /// True for the hydrogen(+1) and oxygen(−2) that water supplies without limit.
 pub fn is_solvent(constituent: &Constituent) -> bool {
-    matches!(constituent.to_string().as_str(), "H+1" | "O-2")
+    matches!(state_of(constituent), ("H", 1000) | ("O", -2000))
+}
+
+/// Symbol and thousandths of the oxidation number.
+fn state_of(constituent: &Constituent) -> (&'static str, i32) {
+    match constituent {
+        Constituent::Element { element, milli_oxidation } => (element.symbol(), *milli_oxidation),
+        Constituent::Unit { .. } => ("", 0),
+    }
 }
 
 fn set_up(library: &Library, recipe: &Recipe, gibbs: &GibbsTable, solvent: &Solvent) -> Result<Setup, LiquorError> {

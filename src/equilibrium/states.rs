@@ -49,13 +49,21 @@ pub fn states_of(liquor: &Liquor, element: Element) -> Vec<Constituent> {
 pub fn present(liquor: &Liquor, constituent: &Constituent) -> Option<StateForm> {
     let potential = liquor.potential(constituent)?;
     let holds = |id: &SpeciesId| liquor.library.get(*id).constituents.iter().any(|(c, _)| c == constituent);
-    let leading = liquor.dissolved.iter().map(|d| d.species).find(holds).or_else(|| water_of(liquor, constituent))?;
+    let leading = match solvent_form(liquor, constituent) {
+        Some(id) => id,
+        None => liquor.dissolved.iter().map(|d| d.species).find(holds)?,
+    };
     Some(StateForm { constituent: constituent.clone(), potential, leading, basis: Basis::Liquor })
 }
 
-/// Water itself stands for the hydrogen(+1) and oxygen(−2) of the solvent where no solute leads.
-fn water_of(liquor: &Liquor, constituent: &Constituent) -> Option<SpeciesId> {
-    super::liquor::is_solvent(constituent).then(|| liquor.library.in_state("H2O", State::Liquid).map(|s| s.id))?
+/// H⁺ stands for the solvent's hydrogen in acid, water for it in alkali and for its oxygen.
+fn solvent_form(liquor: &Liquor, constituent: &Constituent) -> Option<SpeciesId> {
+    if !super::liquor::is_solvent(constituent) {
+        return None;
+    }
+    let acid_hydrogen = constituent.oxidation() > 0.0 && liquor.ph() < 8.0;
+    let (text, state) = if acid_hydrogen { ("H^+", State::Aqueous) } else { ("H2O", State::Liquid) };
+    liquor.library.in_state(text, state).map(|s| s.id)
 }
 
 /// Count of `constituent` in a species and ln of its activity at zero potential of that constituent; `None` when the

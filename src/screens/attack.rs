@@ -4,8 +4,9 @@ use crate::chemistry::{Constituent, Element};
 use crate::equilibrium::couples::form_spread;
 use crate::equilibrium::liquor::is_solvent;
 use crate::equilibrium::states::{self, Basis, StateForm};
-use crate::equilibrium::{Closer, Equation, Liquor};
+use crate::equilibrium::{Closer, Liquor};
 use crate::library::SpeciesId;
+use crate::thermo::equation::Equation;
 use crate::quantity::{Estimate, FARADAY};
 
 /// What becomes of the sulfur (or arsenic) of a sulfide mineral.

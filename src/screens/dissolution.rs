@@ -4,9 +4,10 @@ use crate::case::{Material, Solid};
 use crate::chemistry::Element;
 use crate::equilibrium::couples::ASSUMED_LEAST;
 use crate::equilibrium::liquor::is_solvent;
-use crate::equilibrium::{Equation, Liquor};
+use crate::equilibrium::{Liquor};
 use crate::library::Species;
 use crate::library::tables::{FilmBreaker, FilmRecord};
+use crate::thermo::equation::Equation;
 use crate::quantity::Estimate;
 use crate::scenario::Duty;
 
@@ -34,7 +35,8 @@ pub fn screen(setting: &Setting) -> Vec<Finding> {
     findings
 }
 
-fn reach_of(solid: &Solid) -> f64 {
+/// Concentration at which a solid's dissolution is judged, mol/kg of its formula.
+pub fn reach_of(solid: &Solid) -> f64 {
     match solid.duty {
         Duty::Resist => CORROSION_LIMIT,
         Duty::Dissolve => solid.amount.unwrap_or(FEED_WITHOUT_AMOUNT),
@@ -287,7 +289,7 @@ pub struct Film<'a> {
 
 impl Film<'_> {
     /// Practice relies on this film at this pH, and thermodynamics or the alloy's record bears it out.
-    fn holds(&self) -> bool {
+    pub fn holds(&self) -> bool {
         self.in_range && (self.record.is_some_and(|r| r.protective) || self.alloy)
     }
 

@@ -3,9 +3,10 @@
 use crate::case::Case;
 use crate::chemistry::Element;
 use crate::equilibrium::states::{self, Basis, StateForm};
-use crate::equilibrium::{Closer, Couple, Equation, Liquor, couples};
+use crate::equilibrium::{Closer, Couple, Liquor, couples};
 use crate::library::SpeciesId;
 use crate::library::tables::InertRecord;
+use crate::thermo::equation::Equation;
 use crate::quantity::Estimate;
 
 /// Where a driver comes from.

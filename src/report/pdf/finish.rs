@@ -2,10 +2,10 @@
 
 use lopdf::{Dictionary, Document as PdfFile, Object, ObjectId, text_string};
 
-use crate::report::document::Document;
 use super::PdfError;
 use super::look::PAGE_HEIGHT;
 use super::page::Page;
+use crate::report::document::Document;
 
 /// Headings that have been opened and may still get headings below them.
 struct Open {
@@ -19,15 +19,15 @@ pub fn finish(mut file: PdfFile, document: &Document, pages: &[Page]) -> Result<
     file.version = "1.7".to_owned();
     // printpdf counts its identifiers up from one call to the next. The entry is not required.
     file.trailer.remove(b"ID");
-    let info = file.add_object(properties(document));
-    if let Ok(Object::Reference(replaced)) = file.trailer.get(b"Info").cloned() {
-        file.objects.remove(&replaced);
-    }
-    file.trailer.set("Info", info);
+    let info = file.trailer.get(b"Info").and_then(Object::as_reference)?;
+    file.set_object(info, properties(document));
     let outline = add_outline(&mut file, pages);
     let catalog = file.catalog_mut()?;
     catalog.set("Lang", text_string("en"));
-    catalog.set("ViewerPreferences", Dictionary::from_iter([("DisplayDocTitle", Object::Boolean(true))]));
+    catalog.set(
+        "ViewerPreferences",
+        Dictionary::from_iter([("DisplayDocTitle", Object::Boolean(true))]),
+    );
     if let Some(outline) = outline {
         catalog.set("Outlines", outline);
         catalog.set("PageMode", "UseOutlines");
@@ -40,7 +40,11 @@ pub fn finish(mut file: PdfFile, document: &Document, pages: &[Page]) -> Result<
 
 fn properties(document: &Document) -> Dictionary {
     let date = text_string(&document.date.format("D:%Y%m%d000000Z").to_string());
-    let program = text_string(concat!(env!("CARGO_PKG_NAME"), " ", env!("CARGO_PKG_VERSION")));
+    let program = text_string(concat!(
+        env!("CARGO_PKG_NAME"),
+        " ",
+        env!("CARGO_PKG_VERSION")
+    ));
     let mut properties = Dictionary::from_iter([
         ("Title", text_string(&document.title)),
         ("Subject", text_string(&document.subject)),
@@ -57,9 +61,16 @@ fn properties(document: &Document) -> Dictionary {
 
 /// The outline as nested as the levels of the headings; none without headings.
 fn add_outline(file: &mut PdfFile, pages: &[Page]) -> Option<ObjectId> {
+    if pages.iter().all(|page| page.entries.is_empty()) {
+        return None;
+    }
     let sheets: Vec<ObjectId> = file.get_pages().into_values().collect();
-    let root = file.new_object_id();
-    let mut open = vec![Open { level: 0, id: root, children: Vec::new() }];
+    let root = file.add_object(Dictionary::from_iter([("Type", Object::from("Outlines"))]));
+    let mut open = vec![Open {
+        level: 0,
+        id: root,
+        children: Vec::new(),
+    }];
     for (page, sheet) in pages.iter().zip(sheets) {
         for (entry, y) in &page.entries {
             // Level 0 is the outline itself.
@@ -69,20 +80,24 @@ fn add_outline(file: &mut PdfFile, pages: &[Page]) -> Option<ObjectId> {
             }
             let top = Object::Real(PAGE_HEIGHT - y);
             let target = vec![sheet.into(), "XYZ".into(), Object::Null, top, Object::Null];
-            let item = Dictionary::from_iter([("Title", text_string(&entry.text)), ("Dest", target.into())]);
+            let item = Dictionary::from_iter([
+                ("Title", text_string(&entry.text)),
+                ("Dest", target.into()),
+            ]);
             let id = file.add_object(item);
             if let Some(parent) = open.last_mut() {
                 parent.children.push(id);
             }
-            open.push(Open { level, id, children: Vec::new() });
+            open.push(Open {
+                level,
+                id,
+                children: Vec::new(),
+            });
         }
     }
-    while open.len() > 1 {
+    while !open.is_empty() {
         close(file, &mut open);
     }
-    let outline = open.pop().filter(|outline| !outline.children.is_empty())?;
-    file.set_object(root, Dictionary::from_iter([("Type", Object::from("Outlines"))]));
-    link(file, &outline);
     Some(root)
 }
 
@@ -94,14 +109,22 @@ fn close(file: &mut PdfFile, open: &mut Vec<Open>) {
 
 /// Chains the children of a heading to it and to each other.
 fn link(file: &mut PdfFile, parent: &Open) {
-    let (Some(&first), Some(&last)) = (parent.children.first(), parent.children.last()) else { return };
+    let (Some(&first), Some(&last)) = (parent.children.first(), parent.children.last()) else {
+        return;
+    };
     for (place, &child) in parent.children.iter().enumerate() {
-        let before = place.checked_sub(1).and_then(|before| parent.children.get(before));
+        let before = place
+            .checked_sub(1)
+            .and_then(|before| parent.children.get(before));
         let after = parent.children.get(place + 1);
         if let Ok(child) = file.get_object_mut(child).and_then(Object::as_dict_mut) {
             child.set("Parent", parent.id);
-            before.map(|&before| child.set("Prev", before));
-            after.map(|&after| child.set("Next", after));
+            if let Some(&before) = before {
+                child.set("Prev", before);
+            }
+            if let Some(&after) = after {
+                child.set("Next", after);
+            }
         }
     }
     if let Ok(dictionary) = file.get_object_mut(parent.id).and_then(Object::as_dict_mut) {

@@ -1,0 +1,7 @@
+//! The `halfcell` program: arguments in, reports and exit status out.
+
+use std::process::ExitCode;
+
+fn main() -> ExitCode {
+    halfcell::cli::run()
+}
