@@ -10,7 +10,8 @@ use crate::library::tables::{AlloyRecord, MineralRecord};
 use crate::library::{self, Library, NotFound, Species, SpeciesId};
 use crate::quantity::{Estimate, Kelvin};
 use crate::scenario::{
-    Concentration, ConcentrationBasis, Diagnostic, Diagnostics, Duty, Placed, Scenario, SolidAmount, SolidKind, SolidSpec,
+    Concentration, ConcentrationBasis, Diagnostic, Diagnostics, Duty, Placed, Scenario, SolidAmount, SolidKind,
+    SolidSpec,
 };
 use crate::thermo::water;
 
@@ -181,7 +182,8 @@ impl<'l> Desk<'l> {
         }
         for oxidant in &scenario.oxidants {
             let found = self.species(&oxidant.species);
-            solutes.extend(found.map(|s| self.solute(s, oxidant.amount.value.clone(), Some(oxidant.name.value.clone()))));
+            solutes
+                .extend(found.map(|s| self.solute(s, oxidant.amount.value.clone(), Some(oxidant.name.value.clone()))));
         }
         solutes
     }
@@ -211,7 +213,8 @@ impl<'l> Desk<'l> {
             match self.library.in_state(&name.value, State::Gas) {
                 Some(species) => gases.push((species.id, bar.value)),
                 None => {
-                    let words = self.library.species().iter().filter(|s| s.state == State::Gas).map(|s| s.text.as_str());
+                    let words =
+                        self.library.species().iter().filter(|s| s.state == State::Gas).map(|s| s.text.as_str());
                     let nearest = library::nearest(&name.value, words, 4);
                     self.missing("gas", name, &NotFound { name: name.value.clone(), nearest });
                 }
@@ -267,7 +270,8 @@ impl<'l> Desk<'l> {
 
     fn materials(&self, kind: SolidKind) -> impl Iterator<Item = &'l str> {
         let library = self.library;
-        let alloys = library.alloys.iter().flat_map(|a| [a.uns.as_deref(), a.element.as_deref(), Some(a.name.as_str())]);
+        let alloys =
+            library.alloys.iter().flat_map(|a| [a.uns.as_deref(), a.element.as_deref(), Some(a.name.as_str())]);
         let minerals = library.minerals.iter().map(|m| Some(m.name.as_str()));
         let (first, second): (Vec<_>, Vec<_>) = (alloys.flatten().collect(), minerals.flatten().collect());
         match kind {

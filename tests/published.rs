@@ -86,10 +86,8 @@ const BRATSCH: &[(&str, f64)] = &[
 
 /// Lingane, J. Electroanal. Chem. 4 (1962) 332 (AuCl2^-); Bodländer, Ber. Bunsenges. Phys. Chem. 36 (1903) 3933 (Au(CN)2^-);
 /// both as the IUPAC Stability Constants compilation 4.62 gives them.
-const PRIMARY: &[(&str, f64)] = &[
-    ("AuCl2^- + e^- = Au(cr) + 2 Cl^-", 1.154),
-    ("Au(CN)2^- + e^- = Au(cr) + 2 CN^-", -0.611),
-];
+const PRIMARY: &[(&str, f64)] =
+    &[("AuCl2^- + e^- = Au(cr) + 2 Cl^-", 1.154), ("Au(CN)2^- + e^- = Au(cr) + 2 CN^-", -0.611)];
 
 /// CRC Handbook and Bratsch (1989) class tables, value from memory.
 const MEMORY: &[(&str, f64)] = &[

@@ -80,7 +80,8 @@ pub fn balance(left: &[Formula], right: &[Formula]) -> Result<Vec<i64>, BalanceE
         [] => Err(BalanceError::NotPossible { what: culprit(&columns) }),
         [one] => {
             let whole = whole_numbers(one)?;
-            let flipped: Vec<i64> = if whole.iter().sum::<i64>() < 0 { whole.iter().map(|n| -n).collect() } else { whole };
+            let flipped: Vec<i64> =
+                if whole.iter().sum::<i64>() < 0 { whole.iter().map(|n| -n).collect() } else { whole };
             match flipped.iter().position(|n| *n <= 0) {
                 Some(place) => Err(BalanceError::WrongSide { formula: columns[place].0.canonical() }),
                 None => Ok(flipped),
@@ -229,10 +230,14 @@ fn gcd(a: i128, b: i128) -> i128 {
 fn culprit(columns: &[(&Formula, i128)]) -> String {
     let elements: BTreeSet<Element> = columns.iter().flat_map(|(f, _)| f.composition.keys().copied()).collect();
     let one_sided = |e: &Element| {
-        let signs: BTreeSet<i128> = columns.iter().filter(|(f, _)| f.composition.contains_key(e)).map(|(_, s)| *s).collect();
+        let signs: BTreeSet<i128> =
+            columns.iter().filter(|(f, _)| f.composition.contains_key(e)).map(|(_, s)| *s).collect();
         signs.len() == 1
     };
-    elements.iter().find(|e| one_sided(e)).map_or_else(|| "the charge or an element".to_owned(), |e| e.name().to_owned())
+    elements
+        .iter()
+        .find(|e| one_sided(e))
+        .map_or_else(|| "the charge or an element".to_owned(), |e| e.name().to_owned())
 }
 
 #[cfg(test)]
@@ -267,7 +272,11 @@ mod tests {
             ("Zn -> Zn(OH)4^2- + H2", BASE, "Zn + 2 H2O + 2 OH^- = Zn(OH)4^2- + H2"),
             ("ClO3^- + Cl^- -> Cl2", ACID, "ClO3^- + 5 Cl^- + 6 H^+ = 3 Cl2 + 3 H2O"),
             ("MnO2 + Fe^2+ -> Mn^2+ + Fe^3+", ACID, "MnO2 + 2 Fe^2+ + 4 H^+ = Mn^2+ + 2 Fe^3+ + 2 H2O"),
-            ("As2S3 + NO3^- -> H3AsO4 + SO4^2- + NO", ACID, "3 As2S3 + 28 NO3^- + 4 H2O + 10 H^+ = 6 H3AsO4 + 9 SO4^2- + 28 NO"),
+            (
+                "As2S3 + NO3^- -> H3AsO4 + SO4^2- + NO",
+                ACID,
+                "3 As2S3 + 28 NO3^- + 4 H2O + 10 H^+ = 6 H3AsO4 + 9 SO4^2- + 28 NO",
+            ),
             ("CN^- + ClO^- -> OCN^- + Cl^-", BASE, "CN^- + ClO^- = OCN^- + Cl^-"),
             ("Cu2O -> Cu + Cu^2+", ACID, "Cu2O + 2 H^+ = Cu + Cu^2+ + H2O"),
             ("Al -> Al(OH)4^- + H2", BASE, "2 Al + 6 H2O + 2 OH^- = 2 Al(OH)4^- + 3 H2"),

@@ -19,6 +19,34 @@ impl Element {
         ELEMENTS[usize::from(self.0)].1
     }
 
+    /// True for metals; the metalloids that act as non-metals in water (B, Si, As, Se, Te) are not counted.
+    pub fn is_metal(self) -> bool {
+        !matches!(
+            self.symbol(),
+            "H" | "He"
+                | "B"
+                | "C"
+                | "N"
+                | "O"
+                | "F"
+                | "Ne"
+                | "Si"
+                | "P"
+                | "S"
+                | "Cl"
+                | "Ar"
+                | "As"
+                | "Se"
+                | "Br"
+                | "Kr"
+                | "Te"
+                | "I"
+                | "Xe"
+                | "At"
+                | "Rn"
+        )
+    }
+
     /// Standard atomic weight, g/mol.
     pub fn molar_mass(self) -> f64 {
         ELEMENTS[usize::from(self.0)].2

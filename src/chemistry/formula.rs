@@ -344,14 +344,21 @@ mod tests {
         assert_eq!(atoms("CuSO4*5H2O", "H"), 10.0);
         assert_eq!(atoms("CdSO4·8/3H2O", "O"), 20.0 / 3.0);
         assert_eq!(atoms("Fe0.877S", "Fe"), 0.877);
-        for (text, charge) in [("SO4^2-", -2), ("SO₄²⁻", -2), ("Fe³⁺", 3), ("Na+", 1), ("Cl-", -1), ("NO3-", -1), ("e^-", -1)] {
+        for (text, charge) in
+            [("SO4^2-", -2), ("SO₄²⁻", -2), ("Fe³⁺", 3), ("Na+", 1), ("Cl-", -1), ("NO3-", -1), ("e^-", -1)]
+        {
             assert_eq!(Formula::parse(text).expect(text).charge, charge, "{text}");
         }
     }
 
     #[test]
     fn writes_both_ways() {
-        for (text, pretty) in [("SO4^2-", "SO₄²⁻"), ("CuSO4*5H2O", "CuSO₄·5H₂O"), ("Fe^3+", "Fe³⁺"), ("KFe3(SO4)2(OH)6", "KFe₃(SO₄)₂(OH)₆")] {
+        for (text, pretty) in [
+            ("SO4^2-", "SO₄²⁻"),
+            ("CuSO4*5H2O", "CuSO₄·5H₂O"),
+            ("Fe^3+", "Fe³⁺"),
+            ("KFe3(SO4)2(OH)6", "KFe₃(SO₄)₂(OH)₆"),
+        ] {
             let formula = Formula::parse(text).expect(text);
             assert_eq!(formula.canonical(), text);
             assert_eq!(formula.pretty(), pretty);
@@ -361,7 +368,14 @@ mod tests {
 
     #[test]
     fn says_where_a_formula_is_wrong() {
-        for (text, position, word) in [("Fe3+", 4, "Fe^3+"), ("Fe(OH", 6, "closing"), ("Xx2", 1, "element"), ("Fe^+3", 4, "charge"), ("", 1, "expected"), ("FeO)", 4, "bracket")] {
+        for (text, position, word) in [
+            ("Fe3+", 4, "Fe^3+"),
+            ("Fe(OH", 6, "closing"),
+            ("Xx2", 1, "element"),
+            ("Fe^+3", 4, "charge"),
+            ("", 1, "expected"),
+            ("FeO)", 4, "bracket"),
+        ] {
             let error = Formula::parse(text).expect_err(text);
             assert_eq!(error.position, position, "{text}: {error}");
             assert!(error.to_string().contains(word), "{text}: {error}");
@@ -371,7 +385,14 @@ mod tests {
     /// IUPAC molar masses of common reagents, g/mol (sums of the abridged atomic weights).
     #[test]
     fn molar_masses() {
-        for (text, mass) in [("H2O", 18.015), ("CuFeS2", 183.511), ("CuSO4*5H2O", 249.677), ("NaClO3", 106.44), ("K2Cr2O7", 294.182), ("Au(CN)2^-", 249.006)] {
+        for (text, mass) in [
+            ("H2O", 18.015),
+            ("CuFeS2", 183.511),
+            ("CuSO4*5H2O", 249.677),
+            ("NaClO3", 106.44),
+            ("K2Cr2O7", 294.182),
+            ("Au(CN)2^-", 249.006),
+        ] {
             let found = Formula::parse(text).expect(text).molar_mass();
             assert!((found - mass).abs() < 0.02, "{text}: {found}");
         }

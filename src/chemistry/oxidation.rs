@@ -149,7 +149,12 @@ fn check(formula: &Formula, atoms: &BTreeMap<Element, f64>, charge: f64) -> Resu
         let expected = to_f64(formula.count(*element));
         let found = atoms.get(element).copied().unwrap_or(0.0);
         if (found - expected).abs() > 1e-6 {
-            return Err(OxidationError::Atoms { formula: formula.canonical(), element: element.symbol(), found, expected });
+            return Err(OxidationError::Atoms {
+                formula: formula.canonical(),
+                element: element.symbol(),
+                found,
+                expected,
+            });
         }
     }
     if (charge - f64::from(formula.charge)).abs() > 1e-3 {
@@ -251,10 +256,26 @@ mod tests {
     #[test]
     fn rules_settle_common_species() {
         for (text, symbol, expected) in [
-            ("MnO4^-", "Mn", 7.0), ("Cr2O7^2-", "Cr", 6.0), ("HCrO4^-", "Cr", 6.0), ("FeSO4^+", "Fe", 3.0), ("CuCl2^-", "Cu", 1.0),
-            ("AuCl4^-", "Au", 3.0), ("ClO3^-", "Cl", 5.0), ("HClO", "Cl", 1.0), ("Cu(NH3)4^2+", "Cu", 2.0), ("NH4^+", "N", -3.0),
-            ("SO2", "S", 4.0), ("H2S", "S", -2.0), ("KFe3(SO4)2(OH)6", "Fe", 3.0), ("Cu2(OH)2CO3", "Cu", 2.0), ("Ag2S", "S", -2.0),
-            ("Cu2S", "Cu", 1.0), ("PbSO4", "Pb", 2.0), ("H3AsO4", "As", 5.0), ("As2S3", "As", 3.0), ("Fe(OH)2^+", "Fe", 3.0),
+            ("MnO4^-", "Mn", 7.0),
+            ("Cr2O7^2-", "Cr", 6.0),
+            ("HCrO4^-", "Cr", 6.0),
+            ("FeSO4^+", "Fe", 3.0),
+            ("CuCl2^-", "Cu", 1.0),
+            ("AuCl4^-", "Au", 3.0),
+            ("ClO3^-", "Cl", 5.0),
+            ("HClO", "Cl", 1.0),
+            ("Cu(NH3)4^2+", "Cu", 2.0),
+            ("NH4^+", "N", -3.0),
+            ("SO2", "S", 4.0),
+            ("H2S", "S", -2.0),
+            ("KFe3(SO4)2(OH)6", "Fe", 3.0),
+            ("Cu2(OH)2CO3", "Cu", 2.0),
+            ("Ag2S", "S", -2.0),
+            ("Cu2S", "Cu", 1.0),
+            ("PbSO4", "Pb", 2.0),
+            ("H3AsO4", "As", 5.0),
+            ("As2S3", "As", 3.0),
+            ("Fe(OH)2^+", "Fe", 3.0),
         ] {
             assert_eq!(state(text, symbol), expected, "{symbol} in {text}");
         }

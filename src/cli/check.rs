@@ -33,7 +33,11 @@ pub fn run(args: &Check, library: &Library) -> Result<ExitCode, Failure> {
         Ok((scenario, case)) => {
             output::print(&format!(
                 "{}: reads well: \"{}\", {} solids, {} oxidants, {} dissolved species",
-                args.scenario, scenario.title, case.solids.len(), case.oxidants.len(), scenario.liquor.dissolved.len()
+                args.scenario,
+                scenario.title,
+                case.solids.len(),
+                case.oxidants.len(),
+                scenario.liquor.dissolved.len()
             ))?;
             Ok(ExitCode::SUCCESS)
         }

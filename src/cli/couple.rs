@@ -80,18 +80,23 @@ struct Conditions {
 
 impl Conditions {
     fn read(args: &CoupleArgs, library: &Library, t: Kelvin) -> Result<Self, Failure> {
-        let mut conditions =
-            Self { recipe: Recipe { temperature: t, ph: args.ph, totals: Default::default(), gases: Vec::new() }, given: Vec::new() };
+        let mut conditions = Self {
+            recipe: Recipe { temperature: t, ph: args.ph, totals: Default::default(), gases: Vec::new() },
+            given: Vec::new(),
+        };
         for item in &args.with {
-            let (name, amount) =
-                item.split_once('=').ok_or_else(|| Failure::input(format!("--with takes SPECIES=AMOUNT, found `{item}`")))?;
+            let (name, amount) = item
+                .split_once('=')
+                .ok_or_else(|| Failure::input(format!("--with takes SPECIES=AMOUNT, found `{item}`")))?;
             let species = library.dissolved(name.trim()).map_err(Failure::input)?;
             let amount = scenario::concentration(amount.trim()).map_err(Failure::input)?;
             let water = crate::thermo::water::density(t).map_err(Failure::input)?;
             let molality = match amount.basis {
                 ConcentrationBasis::Molality => amount.amount.value,
                 ConcentrationBasis::AmountPerVolume => amount.amount.value / water,
-                ConcentrationBasis::MassPerVolume => amount.amount.value / water / (species.formula.molar_mass() * 1e-3),
+                ConcentrationBasis::MassPerVolume => {
+                    amount.amount.value / water / (species.formula.molar_mass() * 1e-3)
+                }
                 ConcentrationBasis::MassFraction => amount.amount.value / (species.formula.molar_mass() * 1e-3),
             };
             conditions.given.push((species.id, molality));
@@ -107,7 +112,8 @@ impl Conditions {
         library: &Library,
     ) -> Result<Option<crate::quantity::Estimate>, Failure> {
         let mut recipe = self.recipe.clone();
-        let sides: Vec<_> = [oxidised, reduced].iter().flat_map(|id| &library.get(*id).constituents).map(|(c, _)| c.clone()).collect();
+        let sides: Vec<_> =
+            [oxidised, reduced].iter().flat_map(|id| &library.get(*id).constituents).map(|(c, _)| c.clone()).collect();
         let changing = |c: &crate::chemistry::Constituent| {
             sides.iter().filter(|s| s.element_name() == c.element_name()).any(|s| s != c) && sides.contains(c)
         };
@@ -124,7 +130,9 @@ impl Conditions {
             let (constituent, _) = species.constituents.iter().find(|(c, _)| changing(c))?;
             let total = self.given.iter().find(|(given, _)| *given == id).map_or(USUAL_TOTAL, |(_, m)| *m);
             match species.state {
-                State::Aqueous if crate::equilibrium::liquor::is_solvent(constituent) => states::present(&liquor, constituent),
+                State::Aqueous if crate::equilibrium::liquor::is_solvent(constituent) => {
+                    states::present(&liquor, constituent)
+                }
                 State::Aqueous => states::dissolved_at(&liquor, constituent, total),
                 State::Gas => states::gaseous(&liquor, constituent, 1.0),
                 _ if crate::equilibrium::liquor::is_solvent(constituent) => states::present(&liquor, constituent),

@@ -53,14 +53,25 @@ fn table(liquor: &Liquor, measured: Option<f64>) -> String {
     }
     let _ = writeln!(out, "\n{:<24}{:>14}{:>14}", "species", "mol/kg", "activity");
     for one in liquor.dissolved.iter().filter(|d| d.molality > 1e-12) {
-        let _ = writeln!(out, "{:<24}{:>14.4e}{:>14.4e}", library.get(one.species).label(), one.molality, one.ln_activity.exp());
+        let _ = writeln!(
+            out,
+            "{:<24}{:>14.4e}{:>14.4e}",
+            library.get(one.species).label(),
+            one.molality,
+            one.ln_activity.exp()
+        );
     }
     let _ = writeln!(out, "\n{:<32}{:>10}{:>10}", "couple", "E, V", "u, mV");
     for couple in json::all_couples(liquor) {
         let name = |form| library.get(plain_form(liquor, form)).text.clone();
         let held = if couples::held_back(liquor, &couple, None).is_some() { "  slow or inert" } else { "" };
         let label = format!("{}/{}", name(&couple.oxidised), name(&couple.reduced));
-        let _ = writeln!(out, "{label:<32}{:>10.3}{:>10.0}{held}", couple.potential.value, couple.potential.standard_uncertainty * 1e3);
+        let _ = writeln!(
+            out,
+            "{label:<32}{:>10.3}{:>10.0}{held}",
+            couple.potential.value,
+            couple.potential.standard_uncertainty * 1e3
+        );
     }
     let solids = saturated_solids(liquor);
     if !solids.is_empty() {

@@ -53,7 +53,8 @@ pub fn colour_on(stream: &impl IsTerminal) -> bool {
 /// [`Failure::ClosedPipe`] when the reader has gone, [`Failure::Computation`] for other faults of writing.
 pub fn print(text: &str) -> Result<(), Failure> {
     let mut out = std::io::stdout().lock();
-    let written = out.write_all(text.as_bytes()).and_then(|()| out.write_all(if text.ends_with('\n') { b"" } else { b"\n" }));
+    let written =
+        out.write_all(text.as_bytes()).and_then(|()| out.write_all(if text.ends_with('\n') { b"" } else { b"\n" }));
     match written.and_then(|()| out.flush()) {
         Ok(()) => Ok(()),
         Err(e) if e.kind() == std::io::ErrorKind::BrokenPipe => Err(Failure::ClosedPipe),
@@ -81,7 +82,8 @@ pub fn read_text(path: &str) -> Result<String, Failure> {
         std::fs::read(path)
     };
     let bytes = bytes.map_err(|e| Failure::input(format!("{path}: {e}")))?;
-    String::from_utf8(bytes).map_err(|e| Failure::input(format!("{path}: not UTF-8 text (byte {})", e.utf8_error().valid_up_to())))
+    String::from_utf8(bytes)
+        .map_err(|e| Failure::input(format!("{path}: not UTF-8 text (byte {})", e.utf8_error().valid_up_to())))
 }
 
 /// Writes a file whole: to a temporary name in the same folder, then renamed over the old one.

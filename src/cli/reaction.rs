@@ -51,7 +51,11 @@ pub fn run(args: &Reaction, library: &Library) -> Result<ExitCode, Failure> {
         return Ok(ExitCode::SUCCESS);
     }
     let mut out = format!("{text}\n  at {t}\n");
-    out.push_str(&format!("  ΔG°    {:>10.2} ± {:.2} kJ/mol\n", values.delta_g.value * 1e-3, values.delta_g.standard_uncertainty * 1e-3));
+    out.push_str(&format!(
+        "  ΔG°    {:>10.2} ± {:.2} kJ/mol\n",
+        values.delta_g.value * 1e-3,
+        values.delta_g.standard_uncertainty * 1e-3
+    ));
     out.push_str(&format!("  ΔH°    {:>10.2} kJ/mol\n", values.delta_h * 1e-3));
     out.push_str(&format!("  log K  {:>10.2} ± {:.2}\n", values.log_k.value, values.log_k.standard_uncertainty));
     if let Some(e) = values.potential {

@@ -24,8 +24,10 @@ pub fn run(args: &Show, library: &Library) -> Result<ExitCode, Failure> {
     let alloy = library.alloy(query).map(|a| json!(a));
     let gas = library.gases.iter().find(|g| g.formula == query || g.name.eq_ignore_ascii_case(query)).map(|g| json!(g));
     let mineral = library.mineral(query).map(|m| json!(m));
-    let others: Vec<(&str, Value)> =
-        [("mineral", mineral), ("alloy", alloy), ("gas", gas)].into_iter().filter_map(|(k, v)| v.map(|v| (k, v))).collect();
+    let others: Vec<(&str, Value)> = [("mineral", mineral), ("alloy", alloy), ("gas", gas)]
+        .into_iter()
+        .filter_map(|(k, v)| v.map(|v| (k, v)))
+        .collect();
     if species.is_empty() && others.is_empty() {
         return Err(Failure::input(match library.find(query) {
             Err(e) => e.to_string(),
@@ -110,7 +112,11 @@ fn record(s: &Species, library: &Library) -> Value {
 
 fn plain(s: &Species, library: &Library) -> String {
     let mut out = format!("{}  {} ({})\n", s.label(), s.name, state_name(s.state));
-    out.push_str(&format!("  ΔfG°  {:>10.2} ± {:.2} kJ/mol\n", s.gibbs.value * 1e-3, s.gibbs.standard_uncertainty * 1e-3));
+    out.push_str(&format!(
+        "  ΔfG°  {:>10.2} ± {:.2} kJ/mol\n",
+        s.gibbs.value * 1e-3,
+        s.gibbs.standard_uncertainty * 1e-3
+    ));
     if let Some(h) = s.enthalpy {
         out.push_str(&format!("  ΔfH°  {:>10.2} kJ/mol\n", h.value * 1e-3));
     }

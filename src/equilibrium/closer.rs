@@ -37,7 +37,8 @@ impl<'a, 'l> Closer<'a, 'l> {
         for (constituent, n) in &open {
             *by_element.entry(constituent.element_name()).or_default() += n;
         }
-        let mut makeup: Vec<(&Constituent, f64)> = open.iter().filter(|(c, _)| !is_solvent(c)).map(|(c, n)| (c, *n)).collect();
+        let mut makeup: Vec<(&Constituent, f64)> =
+            open.iter().filter(|(c, _)| !is_solvent(c)).map(|(c, n)| (c, *n)).collect();
         // Of several states of one element the ligand is one that the liquor holds, and the lowest of those: chloride, not
         // the chlorine that is reduced; sulfate, not the sulfide that dissolves.
         let absent = |c: &Constituent| self.liquor.potential(c).is_none();

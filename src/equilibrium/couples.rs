@@ -1,7 +1,7 @@
 //! Every couple's Nernst potential in a liquor whose oxidation states are kept apart.
 
 use crate::chemistry::Element;
-use crate::library::tables::InertRecord;
+use crate::library::tables::{InertClass, InertRecord};
 use crate::quantity::{Estimate, FARADAY};
 
 use super::liquor::Liquor;
@@ -80,6 +80,22 @@ pub fn couples_of(liquor: &Liquor, element: Element) -> Vec<Couple> {
     }
     couples.sort_by(|a, b| b.potential.value.total_cmp(&a.potential.value));
     couples
+}
+
+/// True for states that practice does not see form or react in liquors at all (perchlorate, dinitrogen): they are no
+/// product to reckon with unless the liquor holds them already.
+pub fn never_reached(liquor: &Liquor, constituent: &crate::chemistry::Constituent) -> bool {
+    let library = liquor.library;
+    library.kinetics.inert.iter().any(|record| {
+        record.class == InertClass::Inert
+            && record.against.is_empty()
+            && record.ph_below.is_none()
+            && record.ph_above.is_none()
+            && record.temperature_above_c.is_none_or(|t| liquor.temperature().celsius() <= t)
+            && record.reduced.iter().any(|r| r == "*")
+            && library.records(&record.oxidised).iter().any(|s| s.constituents.iter().any(|(c, _)| c == constituent))
+            && !super::liquor::is_solvent(constituent)
+    })
 }
 
 /// The kinetic record that holds a couple back at the liquor's conditions, if any. `against` names the reductant.

@@ -46,7 +46,11 @@ impl Dual {
     ///
     /// # Errors
     /// [`DualError::Contradiction`] when two imposed conditions cannot hold at once.
-    pub fn new(stoichiometry: Vec<Vec<(usize, f64)>>, totals: Vec<f64>, imposed: &[Imposed]) -> Result<Self, DualError> {
+    pub fn new(
+        stoichiometry: Vec<Vec<(usize, f64)>>,
+        totals: Vec<f64>,
+        imposed: &[Imposed],
+    ) -> Result<Self, DualError> {
         let (origin, freedom) = parametrise(totals.len(), imposed)?;
         Ok(Self { stoichiometry, totals: DVector::from_vec(totals), origin, freedom })
     }
@@ -155,7 +159,11 @@ impl Dual {
         for j in 0..self.freedom.ncols() {
             let column = self.freedom.column(j);
             let miss = column.dot(&(&found - &self.totals)).abs();
-            let scale: f64 = column.iter().zip(size.iter().zip(self.totals.iter())).map(|(f, (s, b))| f.abs() * s.max(b.abs())).sum();
+            let scale: f64 = column
+                .iter()
+                .zip(size.iter().zip(self.totals.iter()))
+                .map(|(f, (s, b))| f.abs() * s.max(b.abs()))
+                .sum();
             let relative = if scale > 0.0 { miss / scale } else { 0.0 };
             if relative > worst.1 || relative.is_nan() {
                 worst = (column.iamax(), relative);

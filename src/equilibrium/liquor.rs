@@ -194,8 +194,12 @@ fn state_of(constituent: &Constituent) -> (&'static str, i32) {
 }
 
 fn set_up(library: &Library, recipe: &Recipe, gibbs: &GibbsTable, solvent: &Solvent) -> Result<Setup, LiquorError> {
-    let mut totals: BTreeMap<Constituent, f64> =
-        recipe.totals.iter().filter(|(c, total)| !is_solvent(c) && **total > 0.0).map(|(c, t)| (c.clone(), *t)).collect();
+    let mut totals: BTreeMap<Constituent, f64> = recipe
+        .totals
+        .iter()
+        .filter(|(c, total)| !is_solvent(c) && **total > 0.0)
+        .map(|(c, t)| (c.clone(), *t))
+        .collect();
     for (gas, _) in &recipe.gases {
         for (constituent, _) in library.get(*gas).constituents.iter().filter(|(c, _)| !is_solvent(c)) {
             totals.entry(constituent.clone()).or_insert(0.0);

@@ -6,7 +6,7 @@ mod dual;
 pub mod liquor;
 pub mod states;
 
-pub use couples::Couple;
 pub use closer::Closer;
+pub use couples::Couple;
 pub use liquor::{Liquor, LiquorError, Recipe};
 pub use states::{Basis, StateForm};

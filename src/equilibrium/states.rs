@@ -125,6 +125,18 @@ pub fn condensed(liquor: &Liquor, constituent: &Constituent) -> Vec<StateForm> {
     forms
 }
 
+/// The solids that a state forms by itself: a metal's with ligands only, a non-metal's without metals. Mixed compounds of
+/// several metals are products of a reaction between them, not the fate of one state.
+pub fn own_condensed(liquor: &Liquor, constituent: &Constituent) -> Vec<StateForm> {
+    let metal = constituent.element().is_some_and(Element::is_metal);
+    let allowed = |form: &StateForm| {
+        let others = liquor.library.get(form.leading).constituents.iter().filter_map(|(c, _)| c.element());
+        let foreign = others.filter(|e| Some(*e) != constituent.element() && e.is_metal()).count();
+        foreign == 0 && (metal || constituent.element().is_some())
+    };
+    condensed(liquor, constituent).into_iter().filter(allowed).collect()
+}
+
 /// The state as a gas at `bar`, the most stable of the gases that hold it.
 pub fn gaseous(liquor: &Liquor, constituent: &Constituent, bar: f64) -> Option<StateForm> {
     liquor
@@ -149,7 +161,7 @@ pub fn in_liquor(liquor: &Liquor, constituent: &Constituent, assumed: f64) -> Op
     if let Some(form) = present(liquor, constituent) {
         return Some(form);
     }
-    let solid = condensed(liquor, constituent).into_iter().next();
+    let solid = own_condensed(liquor, constituent).into_iter().next();
     let solute = dissolved_at(liquor, constituent, assumed);
     match (solid, solute) {
         (Some(a), Some(b)) => Some(if a.potential < b.potential { a } else { b }),

@@ -14,9 +14,7 @@ use thiserror::Error;
 use crate::chemistry::{Constituent, Formula};
 use record::State;
 pub use species::{Species, SpeciesId, TemperatureModel};
-use tables::{
-    ActivityTables, AlloyRecord, ElectrodeRecord, GasRecord, Kinetics, Materials, MineralRecord,
-};
+use tables::{ActivityTables, AlloyRecord, ElectrodeRecord, GasRecord, Kinetics, Materials, MineralRecord};
 
 const PACKED: &[u8] = include_bytes!(concat!(env!("OUT_DIR"), "/materials.bin"));
 
@@ -67,8 +65,7 @@ impl Library {
     /// # Errors
     /// [`LibraryError`] names the record that does not hold together.
     pub fn embedded() -> Result<Self, LibraryError> {
-        let materials: Materials =
-            postcard::from_bytes(PACKED).map_err(|e| LibraryError::Packed(e.to_string()))?;
+        let materials: Materials = postcard::from_bytes(PACKED).map_err(|e| LibraryError::Packed(e.to_string()))?;
         Self::from_materials(materials)
     }
 
@@ -172,19 +169,16 @@ impl Library {
         let wanted = name.trim();
         let same = |field: &Option<String>| field.as_deref().is_some_and(|f| f.eq_ignore_ascii_case(wanted));
         self.alloys.iter().find(|a| {
-            same(&a.uns)
-                || same(&a.en)
-                || a.element.as_deref() == Some(wanted)
-                || a.name.eq_ignore_ascii_case(wanted)
+            same(&a.uns) || same(&a.en) || a.element.as_deref() == Some(wanted) || a.name.eq_ignore_ascii_case(wanted)
         })
     }
 
     /// The mineral of a name or synonym.
     pub fn mineral(&self, name: &str) -> Option<&MineralRecord> {
         let wanted = name.trim();
-        self.minerals.iter().find(|m| {
-            m.name.eq_ignore_ascii_case(wanted) || m.synonyms.iter().any(|s| s.eq_ignore_ascii_case(wanted))
-        })
+        self.minerals
+            .iter()
+            .find(|m| m.name.eq_ignore_ascii_case(wanted) || m.synonyms.iter().any(|s| s.eq_ignore_ascii_case(wanted)))
     }
 
     /// The reference electrode of a name or synonym.
@@ -209,10 +203,7 @@ impl Library {
     }
 
     fn not_found(&self, formula: &str) -> NotFound {
-        NotFound {
-            name: formula.to_owned(),
-            nearest: nearest(formula, self.by_text.keys().map(String::as_str), 4),
-        }
+        NotFound { name: formula.to_owned(), nearest: nearest(formula, self.by_text.keys().map(String::as_str), 4) }
     }
 }
 

@@ -81,8 +81,7 @@ fn one(
     let scale = |t: super::record::Tabulated| Estimate::new(t.value * 1e3, t.u * 1e3);
     let plain = |t: super::record::Tabulated| Estimate::new(t.value, t.u);
     let reactants = reactant_entropy(&formula, elements);
-    let (mut g, mut h, mut s) =
-        (record.g_kj_mol.map(scale), record.h_kj_mol.map(scale), record.s_j_mol_k.map(plain));
+    let (mut g, mut h, mut s) = (record.g_kj_mol.map(scale), record.h_kj_mol.map(scale), record.s_j_mol_k.map(plain));
     let t = T_STANDARD.0;
     if let Some(sum) = reactants {
         match (g, h, s) {
@@ -96,8 +95,9 @@ fn one(
         return Err(fault(record, "neither G, nor H with S, nor a formation reaction is given".into()));
     }
     let is_element = formula.charge == 0 && formula.composition.len() == 1;
-    let constituents = chemistry::constituents(&formula, is_element && g.is_some_and(|g| g.value == 0.0), &record.parts)
-        .map_err(|e| fault(record, e.to_string()))?;
+    let constituents =
+        chemistry::constituents(&formula, is_element && g.is_some_and(|g| g.value == 0.0), &record.parts)
+            .map_err(|e| fault(record, e.to_string()))?;
     let temperature = model(record, &formula, s.is_some(), index)?;
     Ok(Species {
         id,
@@ -121,7 +121,12 @@ fn spread(a: Estimate, b: Estimate) -> f64 {
     a.standard_uncertainty.hypot(b.standard_uncertainty)
 }
 
-fn model(record: &SpeciesRecord, formula: &Formula, has_entropy: bool, index: &Index) -> Result<TemperatureModel, LibraryError> {
+fn model(
+    record: &SpeciesRecord,
+    formula: &Formula,
+    has_entropy: bool,
+    index: &Index,
+) -> Result<TemperatureModel, LibraryError> {
     let text = formula.canonical();
     let dissolved = record.state == State::Aqueous;
     if text == "H2O" && record.state == State::Liquid {
@@ -141,11 +146,16 @@ fn model(record: &SpeciesRecord, formula: &Formula, has_entropy: bool, index: &I
         }
     }
     if has_entropy && dissolved && formula.charge != 0 {
-        return Ok(TemperatureModel::CorrespondencePrinciple(record.ion_class.unwrap_or_else(|| ion_class(formula, &text))));
+        return Ok(TemperatureModel::CorrespondencePrinciple(
+            record.ion_class.unwrap_or_else(|| ion_class(formula, &text)),
+        ));
     }
-    let capacity = record.heat_capacity.or(record.cp_j_mol_k.map(|a| super::record::HeatCapacity { a, b: 0.0, c: 0.0 }));
+    let capacity =
+        record.heat_capacity.or(record.cp_j_mol_k.map(|a| super::record::HeatCapacity { a, b: 0.0, c: 0.0 }));
     match (capacity, has_entropy, &record.formation) {
-        (Some(capacity), true, _) => Ok(TemperatureModel::HeatCapacity { capacity, transitions: record.transitions.clone() }),
+        (Some(capacity), true, _) => {
+            Ok(TemperatureModel::HeatCapacity { capacity, transitions: record.transitions.clone() })
+        }
         (None, true, _) => Ok(TemperatureModel::EntropyOnly),
         (_, false, Some(formation)) => {
             let partners = partners(record, formula, &formation.reaction, index)?;
@@ -175,7 +185,12 @@ fn ion_class(formula: &Formula, text: &str) -> IonClass {
 
 /// Species of a reaction other than the record's own, with coefficients such that
 /// own = Σ coefficient · partner + reaction / [`own_coefficient`].
-fn partners(record: &SpeciesRecord, own: &Formula, reaction: &str, index: &Index) -> Result<Vec<(SpeciesId, f64)>, LibraryError> {
+fn partners(
+    record: &SpeciesRecord,
+    own: &Formula,
+    reaction: &str,
+    index: &Index,
+) -> Result<Vec<(SpeciesId, f64)>, LibraryError> {
     let parsed = ReactionText::parse(reaction).map_err(|e| fault(record, e.to_string()))?;
     let own_text = own.canonical();
     let mut own_count = 0.0;
@@ -299,9 +314,7 @@ fn tie(all: &mut [Species], records: &[SpeciesRecord], index: &Index) -> Result<
 
 fn tie_of(species: &Species, record: &SpeciesRecord, index: &Index) -> Result<Tie, LibraryError> {
     let formation = match &record.formation {
-        Some(formation) if record.g_kj_mol.is_none() => {
-            partners(record, &species.formula, &formation.reaction, index)?
-        }
+        Some(formation) if record.g_kj_mol.is_none() => partners(record, &species.formula, &formation.reaction, index)?,
         _ => Vec::new(),
     };
     let mut waits_for: Vec<SpeciesId> = formation.iter().map(|(id, _)| *id).collect();

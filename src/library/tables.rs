@@ -38,6 +38,9 @@ pub struct GasRecord {
     pub density_relative_to_air: Option<f64>,
     pub warning: String,
     pub hazard: Vec<String>,
+    /// Species from whose state practice sees the gas form; empty means any.
+    #[serde(default)]
+    pub formed_from: Vec<String>,
     #[serde(default)]
     pub note: Option<String>,
     pub source: String,
@@ -178,6 +181,9 @@ pub struct FilmBreaker {
     /// Total of the species' constituent in the liquor, mol/kg, above which it counts.
     #[serde(default)]
     pub above_mol_kg: Option<f64>,
+    /// Total above which practice no longer relies on the film at all, mol/kg.
+    #[serde(default)]
+    pub act_above_mol_kg: Option<f64>,
     pub text: String,
 }
 

@@ -1,15 +1,19 @@
 //! The order of the report: the answer first, then what it rests on.
 
+use super::Subject;
 use super::document::{Block, Document, Text, Tone};
 use super::sections;
-use super::Subject;
 use crate::screens::Attention;
 
 /// The whole report as a document.
 pub fn compose(subject: &Subject) -> Document {
     let scenario = subject.scenario;
     let mut blocks = vec![title_block(subject)];
-    blocks.push(Block::Notice { tone: Tone::Plain, title: "How to read this".into(), body: vec![subject.house.standing.as_str().into()] });
+    blocks.push(Block::Notice {
+        tone: Tone::Plain,
+        title: "How to read this".into(),
+        body: vec![subject.house.standing.as_str().into()],
+    });
     blocks.extend(sections::answer(subject));
     blocks.extend(sections::conditions(subject));
     blocks.extend(sections::solids(subject));

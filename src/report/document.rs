@@ -170,29 +170,17 @@ pub struct Column {
 impl Column {
     /// A column as wide as its widest cell, text to the left.
     pub fn fit(head: impl Into<String>) -> Self {
-        Self {
-            head: head.into(),
-            align: Align::Left,
-            weight: 0.0,
-        }
+        Self { head: head.into(), align: Align::Left, weight: 0.0 }
     }
 
     /// A column as wide as its widest cell, numbers to the right.
     pub fn number(head: impl Into<String>) -> Self {
-        Self {
-            head: head.into(),
-            align: Align::Right,
-            weight: 0.0,
-        }
+        Self { head: head.into(), align: Align::Right, weight: 0.0 }
     }
 
     /// A column that takes this share of the width left over, text to the left and wrapped.
     pub fn share(head: impl Into<String>, weight: f32) -> Self {
-        Self {
-            head: head.into(),
-            align: Align::Left,
-            weight,
-        }
+        Self { head: head.into(), align: Align::Left, weight }
     }
 }
 
@@ -207,10 +195,7 @@ pub struct Row {
 impl Row {
     /// A row without a tone.
     pub fn plain(cells: Vec<Text>) -> Self {
-        Self {
-            cells,
-            tone: Tone::Plain,
-        }
+        Self { cells, tone: Tone::Plain }
     }
 }
 
@@ -228,10 +213,7 @@ mod tests {
 
     #[test]
     fn text_is_put_together_in_reading_order() {
-        let text = Text::from("driven by ")
-            .strong("+480 mV")
-            .plain(" against ")
-            .emphasis("Fe³⁺/Fe²⁺");
+        let text = Text::from("driven by ").strong("+480 mV").plain(" against ").emphasis("Fe³⁺/Fe²⁺");
         assert_eq!(text.to_plain(), "driven by +480 mV against Fe³⁺/Fe²⁺");
         assert_eq!(text.0[1].style, Style::Strong);
         assert_eq!(text.0[3].style, Style::Emphasis);

@@ -32,18 +32,13 @@ pub struct Face {
 /// Whether every face prints this character as itself, or as another that looks the same.
 pub fn covers(character: char) -> bool {
     let printed = look_alike(character);
-    Style::ALL
-        .iter()
-        .all(|&style| Face::of(style).glyph(printed).is_some())
+    Style::ALL.iter().all(|&style| Face::of(style).glyph(printed).is_some())
 }
 
 /// The text as it is printed: look-alikes unified, characters without a glyph replaced by a question mark, and
 /// characters without a shape (soft hyphens, marks for break and direction, controls) left out.
 pub fn printable(text: &str) -> String {
-    text.chars()
-        .filter(|&character| !has_no_shape(character))
-        .map(substitute)
-        .collect()
+    text.chars().filter(|&character| !has_no_shape(character)).map(substitute).collect()
 }
 
 impl Face {
@@ -58,28 +53,15 @@ impl Face {
 
     /// Width of the text as printed at this size, in the unit of the size.
     pub fn width(&self, text: &str, size: f32) -> f32 {
-        let units: u32 = text
-            .chars()
-            .map(|character| u32::from(self.advance(character)))
-            .sum();
+        let units: u32 = text.chars().map(|character| u32::from(self.advance(character))).sum();
         units as f32 * size / f32::from(self.units_per_em)
     }
 
     /// The face as the PDF writer takes it.
     pub fn to_parsed_font(&self) -> ParsedFont {
-        let metrics = FontMetrics {
-            ascent: self.ascent,
-            descent: self.descent,
-        };
-        let characters = self
-            .glyphs
-            .iter()
-            .map(|&(character, glyph, _)| (u32::from(character), glyph));
-        let widths: BTreeMap<u16, u16> = self
-            .glyphs
-            .iter()
-            .map(|&(_, glyph, advance)| (glyph, advance))
-            .collect();
+        let metrics = FontMetrics { ascent: self.ascent, descent: self.descent };
+        let characters = self.glyphs.iter().map(|&(character, glyph, _)| (u32::from(character), glyph));
+        let widths: BTreeMap<u16, u16> = self.glyphs.iter().map(|&(_, glyph, advance)| (glyph, advance)).collect();
         // Six letters and a plus sign mark a font program that holds only some of its glyphs (ISO 32000-1, 9.6.4).
         let name = Some(format!("HALFCL+{}", self.name));
         let mut font = ParsedFont::with_glyph_data(
@@ -100,10 +82,7 @@ impl Face {
         font.pdf_font_metrics.us_weight_class = self.weight;
         if self.italic {
             // The slant of the italic face, 11° from the upright, as rise and run.
-            (
-                font.pdf_font_metrics.caret_slope_rise,
-                font.pdf_font_metrics.caret_slope_run,
-            ) = (1000, 194);
+            (font.pdf_font_metrics.caret_slope_rise, font.pdf_font_metrics.caret_slope_run) = (1000, 194);
         }
         font
     }
@@ -112,15 +91,11 @@ impl Face {
         if has_no_shape(character) {
             return 0;
         }
-        self.glyph(substitute(character))
-            .map_or(0, |(_, advance)| advance)
+        self.glyph(substitute(character)).map_or(0, |(_, advance)| advance)
     }
 
     fn glyph(&self, character: char) -> Option<(u16, u16)> {
-        let place = self
-            .glyphs
-            .binary_search_by_key(&character, |&(held, _, _)| held)
-            .ok()?;
+        let place = self.glyphs.binary_search_by_key(&character, |&(held, _, _)| held).ok()?;
         let (_, glyph, advance) = self.glyphs[place];
         Some((glyph, advance))
     }
@@ -130,11 +105,7 @@ impl Face {
 fn substitute(character: char) -> char {
     let printed = look_alike(character);
     // All faces are cut to the same repertoire.
-    if REGULAR.glyph(printed).is_some() {
-        printed
-    } else {
-        stand_in(character)
-    }
+    if REGULAR.glyph(printed).is_some() { printed } else { stand_in(character) }
 }
 
 /// One of each set of characters that share a glyph, so that copied text is the same whichever
@@ -168,7 +139,9 @@ mod tests {
 
     #[test]
     fn the_characters_of_chemistry_are_covered() {
-        for character in "Fe³⁺ SO₄²⁻ → ΔG° ⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻ ₀₁₂₃₄₅₆₇₈₉₊₋ ←↑↓↔ −±×·≤≥≈≠∞√∆ΣΩ∂µμ‰–—…•‘’“”✓■▪●○◆▲△ αβγφλ ÅéøßŁž".chars() {
+        for character in
+            "Fe³⁺ SO₄²⁻ → ΔG° ⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻ ₀₁₂₃₄₅₆₇₈₉₊₋ ←↑↓↔ −±×·≤≥≈≠∞√∆ΣΩ∂µμ‰–—…•‘’“”✓■▪●○◆▲△ αβγφλ ÅéøßŁž".chars()
+        {
             assert!(covers(character), "{character}");
         }
     }
@@ -177,22 +150,13 @@ mod tests {
     fn a_character_without_a_glyph_is_replaced_visibly() {
         assert!(!covers('鉄'));
         assert_eq!(printable("鉄 Fe"), "? Fe");
-        assert_eq!(
-            Face::of(Style::Regular).width("鉄", 10.0),
-            Face::of(Style::Regular).width("?", 10.0)
-        );
+        assert_eq!(Face::of(Style::Regular).width("鉄", 10.0), Face::of(Style::Regular).width("?", 10.0));
     }
 
     #[test]
     fn shapeless_characters_take_no_room() {
-        assert_eq!(
-            printable("hydro\u{AD}metal\u{200B}lurgy"),
-            "hydrometallurgy"
-        );
-        assert_eq!(
-            Face::of(Style::Regular).width("\u{AD}\u{200B}\u{7}", 10.0),
-            0.0
-        );
+        assert_eq!(printable("hydro\u{AD}metal\u{200B}lurgy"), "hydrometallurgy");
+        assert_eq!(Face::of(Style::Regular).width("\u{AD}\u{200B}\u{7}", 10.0), 0.0);
     }
 
     #[test]

@@ -13,11 +13,8 @@ use subsetter::GlyphRemapper;
 use ttf_parser::Face;
 
 /// Constant in the generated source, and the file of the face without its extension.
-const FACES: &[(&str, &str)] = &[
-    ("REGULAR", "SourceSans3-Regular"),
-    ("STRONG", "SourceSans3-Semibold"),
-    ("EMPHASIS", "SourceSans3-It"),
-];
+const FACES: &[(&str, &str)] =
+    &[("REGULAR", "SourceSans3-Regular"), ("STRONG", "SourceSans3-Semibold"), ("EMPHASIS", "SourceSans3-It")];
 
 /// Whole blocks of Unicode that are kept as far as a face has them.
 const BLOCKS: &[RangeInclusive<char>] = &[
@@ -40,10 +37,8 @@ pub fn cut_fonts(source_dir: &Path, out_dir: &Path) -> Result<(), String> {
     let mut source = String::new();
     for (constant, name) in FACES {
         let file = source_dir.join(format!("{name}.ttf"));
-        let whole = fs::read(&file)
-            .map_err(|error| format!("cannot read the font {}: {error}", file.display()))?;
-        let (program, entry) =
-            cut_face(constant, name, &whole).map_err(|error| format!("font {name}: {error}"))?;
+        let whole = fs::read(&file).map_err(|error| format!("cannot read the font {}: {error}", file.display()))?;
+        let (program, entry) = cut_face(constant, name, &whole).map_err(|error| format!("font {name}: {error}"))?;
         write_file(&out_dir.join(format!("{name}.cut.ttf")), &program)?;
         source.push_str(&entry);
     }
@@ -73,12 +68,7 @@ fn repertoire() -> impl Iterator<Item = char> {
 }
 
 /// A `static` of type `Face` as Rust source; `src/report/fonts.rs` includes it.
-fn source_entry(
-    constant: &str,
-    name: &str,
-    face: &Face,
-    glyphs: &BTreeMap<char, (u16, u16)>,
-) -> String {
+fn source_entry(constant: &str, name: &str, face: &Face, glyphs: &BTreeMap<char, (u16, u16)>) -> String {
     let bounds = face.global_bounding_box();
     let mut table = String::new();
     for (character, (glyph, advance)) in glyphs {

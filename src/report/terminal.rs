@@ -26,7 +26,8 @@ pub fn summary(subject: &Subject, colour: bool) -> String {
         subject.findings.len()
     );
     for attention in [Attention::Act, Attention::Review] {
-        let list: Vec<&Finding> = super::sections::leading(subject.findings).into_iter().filter(|f| f.attention == attention).collect();
+        let list: Vec<&Finding> =
+            super::sections::leading(subject.findings).into_iter().filter(|f| f.attention == attention).collect();
         let _ = writeln!(out, "\n{} ({})", paint(attention.name().to_uppercase(), attention, colour), list.len());
         for finding in list {
             wrapped(&mut out, &finding.statement);

@@ -12,7 +12,9 @@ use crate::quantity::Estimate;
 use super::diagnostics::{Diagnostic, Diagnostics, Source, nearest};
 use super::table::{Later, Table, concentration_of, positive, quantity_of, text_of};
 use super::units::Dimension;
-use super::{ContactSpec, Duty, LiquorSpec, MeasuredPotential, OxidantSpec, Placed, Scenario, SolidAmount, SolidKind, SolidSpec};
+use super::{
+    ContactSpec, Duty, LiquorSpec, MeasuredPotential, OxidantSpec, Placed, Scenario, SolidAmount, SolidKind, SolidSpec,
+};
 
 const SECTIONS: &[&str] = &["scenario", "liquor", "oxidant", "metal", "mineral", "contact"];
 const LATER_SECTIONS: &[Later] = &[
@@ -40,7 +42,8 @@ pub fn scenario(source: Source) -> Result<Scenario, Diagnostics> {
         Err(error) => {
             let span = error.span().unwrap_or(0..0);
             let span = span.start + shift..span.end + shift;
-            let problem = Diagnostic::new(span, format!("not valid TOML: {}", error.message().replace('\n', ", ")), "here");
+            let problem =
+                Diagnostic::new(span, format!("not valid TOML: {}", error.message().replace('\n', ", ")), "here");
             return Err(Diagnostics::new(&source, vec![problem]));
         }
     };
@@ -87,23 +90,41 @@ fn sections<'t>(source: &Source, root: &'t DeTable<'t>, problems: &mut Vec<Diagn
     let liquor = liquor?;
     check_amounts(&liquor, &solids, problems);
     let (title, reference, revision, prepared_by, date) = title?;
-    Some(Scenario { source: source.clone(), title, reference, revision, prepared_by, date, liquor, oxidants, solids, contacts })
+    Some(Scenario {
+        source: source.clone(),
+        title,
+        reference,
+        revision,
+        prepared_by,
+        date,
+        liquor,
+        oxidants,
+        solids,
+        contacts,
+    })
 }
 
 fn unknown_section(name: &str, span: Range<usize>, problems: &mut Vec<Diagnostic>) {
     if let Some(refused) = LATER_SECTIONS.iter().find(|l| l.key == name) {
         let message = format!("`{name}` is not screened by this version");
-        problems.push(Diagnostic::new(span, message, refused.why).with_help("remove it: nothing in it would be computed"));
+        problems
+            .push(Diagnostic::new(span, message, refused.why).with_help("remove it: nothing in it would be computed"));
         return;
     }
     let problem = Diagnostic::new(span, format!("`{name}` is not a section of a scenario"), "unknown section");
-    problems.push(problem.with_help(nearest(name, SECTIONS).map_or_else(
-        || format!("sections: {}", SECTIONS.join(", ")),
-        |word| format!("did you mean `{word}`?"),
-    )));
+    problems.push(
+        problem.with_help(
+            nearest(name, SECTIONS)
+                .map_or_else(|| format!("sections: {}", SECTIONS.join(", ")), |word| format!("did you mean `{word}`?")),
+        ),
+    );
 }
 
-fn single<'t>(name: &'static str, value: &'t Spanned<DeValue<'t>>, problems: &mut Vec<Diagnostic>) -> Option<Table<'t>> {
+fn single<'t>(
+    name: &'static str,
+    value: &'t Spanned<DeValue<'t>>,
+    problems: &mut Vec<Diagnostic>,
+) -> Option<Table<'t>> {
     match value.get_ref() {
         DeValue::Table(table) => Some(Table::new(name, value.span(), table)),
         _ => {
@@ -120,7 +141,11 @@ fn many<'t, T>(
     mut read: impl FnMut(Table<'t>, &mut Vec<Diagnostic>) -> Option<T>,
 ) -> Vec<T> {
     let DeValue::Array(items) = value.get_ref() else {
-        let problem = Diagnostic::new(value.span(), format!("{name} is written with double brackets"), "one table, not a list of them");
+        let problem = Diagnostic::new(
+            value.span(),
+            format!("{name} is written with double brackets"),
+            "one table, not a list of them",
+        );
         problems.push(problem.with_help(format!("begin each with a line `{name}`")));
         return Vec::new();
     };
@@ -210,7 +235,10 @@ fn ph_in_range(read: Placed<(Estimate, Dimension)>, problems: &mut Vec<Diagnosti
     None
 }
 
-fn temperature_in_range(read: Placed<(Estimate, Dimension)>, problems: &mut Vec<Diagnostic>) -> Option<Placed<Estimate>> {
+fn temperature_in_range(
+    read: Placed<(Estimate, Dimension)>,
+    problems: &mut Vec<Diagnostic>,
+) -> Option<Placed<Estimate>> {
     let celsius = read.value.0.value - 273.15;
     if (0.0..=300.0).contains(&celsius) {
         return Some(plain(read));
@@ -236,7 +264,8 @@ fn potential_of(text: &Placed<String>, problems: &mut Vec<Diagnostic>) -> Option
             None
         }
         Err(fault) => {
-            let mut problem = Diagnostic::new(text.span.clone(), format!("`potential`: {}", fault.message), "cannot be read");
+            let mut problem =
+                Diagnostic::new(text.span.clone(), format!("`potential`: {}", fault.message), "cannot be read");
             problem.help = fault.help.or_else(|| Some("such as \"640 mV vs Ag/AgCl 3 M KCl\"".into()));
             problems.push(problem);
             None
@@ -268,7 +297,11 @@ fn solid(kind: SolidKind, mut table: Table, problems: &mut Vec<Diagnostic>) -> O
         .filter(|read| positive("amount", read.value.0.value, &read.span, problems).is_some())
         .map(|read| {
             let (amount, dimension) = read.value;
-            let value = if dimension == Dimension::MassFraction { SolidAmount::PerOre(amount) } else { SolidAmount::PerLiquor(amount) };
+            let value = if dimension == Dimension::MassFraction {
+                SolidAmount::PerOre(amount)
+            } else {
+                SolidAmount::PerLiquor(amount)
+            };
             Placed { value, span: read.span }
         });
     let area = optional_positive(&mut table, "area", &[Dimension::Area], problems);
@@ -281,8 +314,12 @@ fn duty_of(text: Placed<String>, problems: &mut Vec<Diagnostic>) -> Option<Place
         "dissolve" => Duty::Dissolve,
         "resist" => Duty::Resist,
         other => {
-            let help = nearest(other, &["dissolve", "resist"]).map_or("duties: dissolve, resist".into(), |w| format!("did you mean `{w}`?"));
-            problems.push(Diagnostic::new(text.span, format!("`{other}` is not a duty"), "`dissolve` or `resist`").with_help(help));
+            let help = nearest(other, &["dissolve", "resist"])
+                .map_or("duties: dissolve, resist".into(), |w| format!("did you mean `{w}`?"));
+            problems.push(
+                Diagnostic::new(text.span, format!("`{other}` is not a duty"), "`dissolve` or `resist`")
+                    .with_help(help),
+            );
             return None;
         }
     };
@@ -293,7 +330,9 @@ fn contact(mut table: Table, problems: &mut Vec<Diagnostic>) -> Option<ContactSp
     let name = table.required_text("name", problems);
     let span = table.span.clone();
     let metals = match table.value("metals").map(|v| (v, v.get_ref())) {
-        Some((_, DeValue::Array(items))) => items.iter().filter_map(|item| text_of("metals", item, problems)).collect::<Vec<_>>(),
+        Some((_, DeValue::Array(items))) => {
+            items.iter().filter_map(|item| text_of("metals", item, problems)).collect::<Vec<_>>()
+        }
         Some((value, _)) => {
             problems.push(Diagnostic::new(value.span(), "`metals` is a list of names", "not a list"));
             Vec::new()
@@ -321,7 +360,11 @@ fn check_names(solids: &[SolidSpec], contacts: &[ContactSpec], problems: &mut Ve
     let names: Vec<&str> = seen.into_iter().collect();
     for member in contacts.iter().flat_map(|c| &c.metals) {
         if !names.contains(&member.value.as_str()) {
-            let mut problem = Diagnostic::new(member.span.clone(), format!("no metal is named `{}`", member.value), "not in this file");
+            let mut problem = Diagnostic::new(
+                member.span.clone(),
+                format!("no metal is named `{}`", member.value),
+                "not in this file",
+            );
             problem.help = nearest(&member.value, &names).map(|word| format!("did you mean `{word}`?"));
             problems.push(problem);
         }

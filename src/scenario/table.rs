@@ -45,7 +45,8 @@ impl<'t> Table<'t> {
     }
 
     fn missing(&self, key: &str, problems: &mut Vec<Diagnostic>) {
-        let line = Diagnostic::new(self.span.clone(), format!("{} needs `{key}`", self.name), format!("`{key}` is missing"));
+        let line =
+            Diagnostic::new(self.span.clone(), format!("{} needs `{key}`", self.name), format!("`{key}` is missing"));
         problems.push(line);
     }
 
@@ -75,7 +76,12 @@ impl<'t> Table<'t> {
     }
 
     /// A quantity, when the key is there.
-    pub fn quantity(&mut self, key: &str, expected: &[Dimension], problems: &mut Vec<Diagnostic>) -> Option<Placed<(Estimate, Dimension)>> {
+    pub fn quantity(
+        &mut self,
+        key: &str,
+        expected: &[Dimension],
+        problems: &mut Vec<Diagnostic>,
+    ) -> Option<Placed<(Estimate, Dimension)>> {
         let value = self.take(key)?;
         quantity_of(key, value, expected, problems)
     }
@@ -99,15 +105,18 @@ impl<'t> Table<'t> {
         for (key, _) in self.entries {
             if let Some(refused) = later.iter().find(|l| l.key == key.value) {
                 let message = format!("`{}` is not computed by this version", key.value);
-                problems.push(Diagnostic::new(key.span, message, refused.why).with_help("remove it: nothing in it would be used"));
+                problems.push(
+                    Diagnostic::new(key.span, message, refused.why).with_help("remove it: nothing in it would be used"),
+                );
                 continue;
             }
             let message = format!("`{}` is not a key of {}", key.value, self.name);
             let mut problem = Diagnostic::new(key.span, message, "unknown key");
-            problem.help = Some(nearest(&key.value, known).map_or_else(
-                || format!("keys here: {}", known.join(", ")),
-                |word| format!("did you mean `{word}`?"),
-            ));
+            problem.help =
+                Some(nearest(&key.value, known).map_or_else(
+                    || format!("keys here: {}", known.join(", ")),
+                    |word| format!("did you mean `{word}`?"),
+                ));
             problems.push(problem);
         }
     }
@@ -137,7 +146,11 @@ pub fn quantity_of(
         DeValue::Integer(number) => number.to_string(),
         DeValue::Float(number) => number.to_string(),
         _ => {
-            problems.push(Diagnostic::new(span, format!("`{key}` is a quantity such as \"1.5 g/L\""), "not a quantity"));
+            problems.push(Diagnostic::new(
+                span,
+                format!("`{key}` is a quantity such as \"1.5 g/L\""),
+                "not a quantity",
+            ));
             return None;
         }
     };
@@ -153,13 +166,21 @@ pub fn quantity_of(
 }
 
 /// A positive concentration.
-pub fn concentration_of(key: &str, value: &Spanned<DeValue>, problems: &mut Vec<Diagnostic>) -> Option<Placed<Concentration>> {
+pub fn concentration_of(
+    key: &str,
+    value: &Spanned<DeValue>,
+    problems: &mut Vec<Diagnostic>,
+) -> Option<Placed<Concentration>> {
     let read = quantity_of(key, value, super::CONCENTRATIONS, problems)?;
     let (amount, dimension) = read.value;
     positive(key, amount.value, &read.span, problems)?;
     let basis = basis(dimension);
     if basis == super::ConcentrationBasis::MassFraction && amount.value >= 1.0 {
-        problems.push(Diagnostic::new(read.span, format!("`{key}`: the solute cannot be the whole solution"), "100 % or more"));
+        problems.push(Diagnostic::new(
+            read.span,
+            format!("`{key}`: the solute cannot be the whole solution"),
+            "100 % or more",
+        ));
         return None;
     }
     Some(Placed { value: Concentration { amount, basis }, span: read.span })

@@ -153,7 +153,8 @@ struct Unit {
 
 fn unit(text: &str, expected: &[Dimension]) -> Result<Unit, Fault> {
     let plain = text.trim();
-    let known: Vec<&str> = UNITS.iter().filter(|u| expected.contains(&u.1)).map(|u| u.0).filter(|u| u.is_ascii() || *u == "°C").collect();
+    let known: Vec<&str> =
+        UNITS.iter().filter(|u| expected.contains(&u.1)).map(|u| u.0).filter(|u| u.is_ascii() || *u == "°C").collect();
     if plain.is_empty() {
         return match expected {
             [Dimension::Number] => Ok(Unit { dimension: Dimension::Number, factor: 1.0, offset: 0.0 }),
@@ -174,14 +175,16 @@ fn unit(text: &str, expected: &[Dimension]) -> Result<Unit, Fault> {
     let squeezed = alias.replace(' ', "");
     match UNITS.iter().find(|u| u.0 == squeezed) {
         Some(u) if expected.contains(&u.1) => Ok(Unit { dimension: u.1, factor: u.2, offset: u.3 }),
-        Some(_) => Err(Fault::new(format!("`{plain}` is not a unit for this quantity")).help(format!("units here: {}", known.join(", ")))),
+        Some(_) => Err(Fault::new(format!("`{plain}` is not a unit for this quantity"))
+            .help(format!("units here: {}", known.join(", ")))),
         None => {
             let hint = match plain {
                 "C" | "c" => Some("degC"),
                 "F" => Some("degF"),
                 _ => nearest(&squeezed, &known),
             };
-            let help = hint.map_or_else(|| format!("units here: {}", known.join(", ")), |h| format!("did you mean `{h}`?"));
+            let help =
+                hint.map_or_else(|| format!("units here: {}", known.join(", ")), |h| format!("did you mean `{h}`?"));
             Err(Fault::new(format!("`{plain}` is not a known unit")).help(help))
         }
     }
@@ -233,12 +236,26 @@ mod tests {
     #[test]
     fn units_convert_to_si() {
         for (text, dimension, si) in [
-            ("45 degC", Dimension::Temperature, 318.15), ("45°C", Dimension::Temperature, 318.15), ("212 degF", Dimension::Temperature, 373.15),
-            ("300 K", Dimension::Temperature, 300.0), ("2.0 mol/L", Dimension::AmountPerVolume, 2000.0), ("5 mmol/L", Dimension::AmountPerVolume, 5.0),
-            ("15 g/L", Dimension::MassPerVolume, 15.0), ("20 mg/L", Dimension::MassPerVolume, 0.02), ("0.3 mol/kg", Dimension::Molality, 0.3),
-            ("640 mV", Dimension::Potential, 0.64), ("0.21 atm", Dimension::Pressure, 0.21 * 1.01325), ("20 kPa", Dimension::Pressure, 0.2),
-            ("12 m3", Dimension::Volume, 12.0), ("500 L", Dimension::Volume, 0.5), ("25 cm2", Dimension::Area, 0.0025), ("2 g/t", Dimension::MassFraction, 2e-6),
-            ("12.5 %", Dimension::MassFraction, 0.125), ("40 ppm", Dimension::MassFraction, 4e-5), ("−5 degC", Dimension::Temperature, 268.15), ("1e-3 mol/L", Dimension::AmountPerVolume, 1.0),
+            ("45 degC", Dimension::Temperature, 318.15),
+            ("45°C", Dimension::Temperature, 318.15),
+            ("212 degF", Dimension::Temperature, 373.15),
+            ("300 K", Dimension::Temperature, 300.0),
+            ("2.0 mol/L", Dimension::AmountPerVolume, 2000.0),
+            ("5 mmol/L", Dimension::AmountPerVolume, 5.0),
+            ("15 g/L", Dimension::MassPerVolume, 15.0),
+            ("20 mg/L", Dimension::MassPerVolume, 0.02),
+            ("0.3 mol/kg", Dimension::Molality, 0.3),
+            ("640 mV", Dimension::Potential, 0.64),
+            ("0.21 atm", Dimension::Pressure, 0.21 * 1.01325),
+            ("20 kPa", Dimension::Pressure, 0.2),
+            ("12 m3", Dimension::Volume, 12.0),
+            ("500 L", Dimension::Volume, 0.5),
+            ("25 cm2", Dimension::Area, 0.0025),
+            ("2 g/t", Dimension::MassFraction, 2e-6),
+            ("12.5 %", Dimension::MassFraction, 0.125),
+            ("40 ppm", Dimension::MassFraction, 4e-5),
+            ("−5 degC", Dimension::Temperature, 268.15),
+            ("1e-3 mol/L", Dimension::AmountPerVolume, 1.0),
         ] {
             let found = read(text, dimension).value;
             assert!((found - si).abs() <= 1e-9 * si.abs(), "{text}: {found}");
@@ -261,9 +278,16 @@ mod tests {
     #[test]
     fn faults_name_the_unit_meant() {
         for (text, dimension, word) in [
-            ("45", Dimension::Temperature, "unit is missing"), ("45 C", Dimension::Temperature, "degC"), ("45 degc", Dimension::Temperature, "degC"),
-            ("1,5 g/L", Dimension::MassPerVolume, "decimal point"), ("abc", Dimension::Number, "number"), ("1 200 g/L", Dimension::MassPerVolume, "space"),
-            ("5 g/L", Dimension::Temperature, "degC"), ("60..40 degC", Dimension::Temperature, "lower end"), ("1.2 g/L", Dimension::Number, "without a unit"), ("", Dimension::Number, "number"),
+            ("45", Dimension::Temperature, "unit is missing"),
+            ("45 C", Dimension::Temperature, "degC"),
+            ("45 degc", Dimension::Temperature, "degC"),
+            ("1,5 g/L", Dimension::MassPerVolume, "decimal point"),
+            ("abc", Dimension::Number, "number"),
+            ("1 200 g/L", Dimension::MassPerVolume, "space"),
+            ("5 g/L", Dimension::Temperature, "degC"),
+            ("60..40 degC", Dimension::Temperature, "lower end"),
+            ("1.2 g/L", Dimension::Number, "without a unit"),
+            ("", Dimension::Number, "number"),
         ] {
             let fault = quantity(text, &[dimension]).expect_err(text);
             let said = format!("{} {}", fault.message, fault.help.unwrap_or_default());

@@ -6,8 +6,8 @@ use crate::equilibrium::liquor::is_solvent;
 use crate::equilibrium::states::{self, Basis, StateForm};
 use crate::equilibrium::{Closer, Liquor};
 use crate::library::SpeciesId;
-use crate::thermo::equation::Equation;
 use crate::quantity::{Estimate, FARADAY};
+use crate::thermo::equation::Equation;
 
 /// What becomes of the sulfur (or arsenic) of a sulfide mineral.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -112,6 +112,13 @@ pub fn paths(liquor: &Liquor, solid: SpeciesId, moles: f64, e: f64, products: Pr
     routes(liquor, solid).into_iter().filter_map(|route| path(liquor, solid, moles, e, products, route)).collect()
 }
 
+/// The path on which every constituent keeps its state: acid, base or ligands alone.
+pub fn without_electrons(liquor: &Liquor, solid: SpeciesId, moles: f64) -> Option<Path> {
+    assemble(liquor, solid, 0.0, Route::Plain, |constituent, count| {
+        states::dissolved_at(liquor, constituent, count * moles + liquor.total(constituent)).into_iter().collect()
+    })
+}
+
 fn routes(liquor: &Liquor, solid: SpeciesId) -> Vec<Route> {
     let sulfide = |(c, _): &(Constituent, f64)| symbol(c) == "S" && c.oxidation() < 0.0;
     if liquor.library.get(solid).constituents.iter().any(sulfide) {
@@ -122,6 +129,19 @@ fn routes(liquor: &Liquor, solid: SpeciesId) -> Vec<Route> {
 }
 
 fn path(liquor: &Liquor, solid: SpeciesId, moles: f64, e: f64, products: Products, route: Route) -> Option<Path> {
+    assemble(liquor, solid, e, route, |constituent, count| {
+        candidates(liquor, constituent, count * moles, products, route)
+    })
+}
+
+/// Puts the cheapest form of each constituent together; `forms` lists what a constituent of a given count may become.
+fn assemble(
+    liquor: &Liquor,
+    solid: SpeciesId,
+    e: f64,
+    route: Route,
+    forms: impl Fn(&Constituent, f64) -> Vec<StateForm>,
+) -> Option<Path> {
     let species = liquor.library.get(solid);
     let electron = (liquor.gibbs.electron() - FARADAY * e) / liquor.temperature().rt();
     let gibbs = liquor.gibbs.of(solid);
@@ -135,7 +155,7 @@ fn path(liquor: &Liquor, solid: SpeciesId, moles: f64, e: f64, products: Product
             continue;
         }
         let cost = |form: &StateForm| form.potential + (form.oxidation() - constituent.oxidation()) * electron;
-        let form = candidates(liquor, constituent, *count * moles, products, route)
+        let form = forms(constituent, *count)
             .into_iter()
             .filter(|form| form.leading != solid)
             .min_by(|a, b| cost(a).total_cmp(&cost(b)))?;
@@ -148,7 +168,13 @@ fn path(liquor: &Liquor, solid: SpeciesId, moles: f64, e: f64, products: Product
 }
 
 /// Forms that a constituent of a solid may take.
-fn candidates(liquor: &Liquor, constituent: &Constituent, moles: f64, products: Products, route: Route) -> Vec<StateForm> {
+fn candidates(
+    liquor: &Liquor,
+    constituent: &Constituent,
+    moles: f64,
+    products: Products,
+    route: Route,
+) -> Vec<StateForm> {
     let sulfide = symbol(constituent) == "S" && constituent.oxidation() < 0.0;
     let states = match constituent.element() {
         Some(element) if sulfide => sulfur_states(liquor, element, route),
@@ -168,7 +194,7 @@ fn candidates(liquor: &Liquor, constituent: &Constituent, moles: f64, products: 
         forms.extend(states::dissolved_at(liquor, &state, moles + liquor.total(&state)));
         let solid_allowed = products == Products::All || (sulfide && state.oxidation() == 0.0);
         if solid_allowed {
-            forms.extend(states::condensed(liquor, &state));
+            forms.extend(states::own_condensed(liquor, &state));
         }
     }
     forms

@@ -36,7 +36,8 @@ fn record<'l>(solid: &Solid<'l>) -> Option<&'l AlloyRecord> {
 /// Range of the practical potential: that of the broken film when the liquor breaks it.
 fn series_range(setting: &Setting, solid: &Solid) -> Option<[f64; 2]> {
     let record = record(solid)?;
-    let top = setting.drivers.iter().filter(|d| d.held_back.is_none()).map(|d| d.potential.value).fold(f64::MIN, f64::max);
+    let top =
+        setting.drivers.iter().filter(|d| d.held_back.is_none()).map(|d| d.potential.value).fold(f64::MIN, f64::max);
     let holds = super::dissolution::film(setting, solid, top).is_some_and(|f| f.holds());
     match (record.film && !holds, record.seawater_potential_active_v_she) {
         (true, Some(active)) => Some(active),
@@ -60,15 +61,21 @@ fn pair(setting: &Setting, contact: &Contact, a: &Solid, b: &Solid) -> Finding {
         (Verdict::Driven, _, _) => Attention::Review,
         _ => Attention::Note,
     };
-    let ratio_words = ratio.map_or(" (no areas given)".into(), |r| format!(" (cathode to anode area {r:.2})"));
+    let ratio_words = ratio.map_or(" (no areas given)".into(), |r| format!(" (cathode to anode area {r:.0} to 1)"));
     let statement = match verdict {
         Verdict::Driven => format!(
             "In contact {}, {} is the likely anode to {}: {} apart by the practical series{ratio_words}.",
-            contact.name, anode.name, cathode.name, text::millivolts(gap)
+            contact.name,
+            anode.name,
+            cathode.name,
+            text::millivolts(gap)
         ),
         _ => format!(
             "In contact {}, {} and {} stand close in the practical series ({}); either may be the anode.",
-            contact.name, anode.name, cathode.name, text::millivolts(gap)
+            contact.name,
+            anode.name,
+            cathode.name,
+            text::millivolts(gap)
         ),
     };
     let against = format!("{} | {}", contact.name, cathode.name);
@@ -95,7 +102,8 @@ fn not_assessed(contact: &Contact, a: &Solid, b: &Solid) -> Finding {
         contact.name, a.name, b.name
     );
     let against = format!("{} | {}", contact.name, b.name);
-    let mut finding = Finding::new(Question::Contact, &a.name, Some(&against), Verdict::NotAssessed, Attention::Review, statement);
+    let mut finding =
+        Finding::new(Question::Contact, &a.name, Some(&against), Verdict::NotAssessed, Attention::Review, statement);
     finding.cautions.extend(["general".into(), "corrosion".into()]);
     finding
 }

@@ -2,14 +2,14 @@
 
 use crate::case::{Material, Solid};
 use crate::chemistry::Element;
+use crate::equilibrium::Liquor;
 use crate::equilibrium::couples::ASSUMED_LEAST;
 use crate::equilibrium::liquor::is_solvent;
-use crate::equilibrium::{Liquor};
 use crate::library::Species;
 use crate::library::tables::{FilmBreaker, FilmRecord};
-use crate::thermo::equation::Equation;
 use crate::quantity::Estimate;
 use crate::scenario::Duty;
+use crate::thermo::equation::Equation;
 
 use super::attack::{self, Path, Products, Route};
 use super::drivers::{Driver, Origin};
@@ -62,11 +62,7 @@ pub fn leading_path(liquor: &Liquor, solid: &Solid, e: f64, products: Products) 
 fn without_electrons(setting: &Setting, solid: &Solid) -> Option<Finding> {
     let liquor = &setting.liquor;
     let Material::Compound { species, .. } = solid.material else { return None };
-    let hydrogen = setting.drivers.iter().find(|d| d.origin == Origin::Acid).map_or(0.0, |d| d.potential.value);
-    let path = attack::paths(liquor, species, reach_of(solid), hydrogen, Products::Dissolved)
-        .into_iter()
-        .filter(|p| p.electrons.abs() < 1e-9)
-        .min_by(|a, b| a.delta_g(liquor, 0.0).value.total_cmp(&b.delta_g(liquor, 0.0).value))?;
+    let path = attack::without_electrons(liquor, species, reach_of(solid))?;
     let gain = attack::affinity(&path, liquor);
     let verdict = Verdict::of(gain);
     let record = liquor.library.get(species);
@@ -74,14 +70,19 @@ fn without_electrons(setting: &Setting, solid: &Solid) -> Option<Finding> {
     let attention = attention(solid, verdict, false, false);
     let against = "acid and ligands";
     let statement = match verdict {
-        Verdict::Driven => format!("{} dissolves without an oxidant, as {}.", text::capital(&solid.name), products_text(liquor, &path)),
+        Verdict::Driven => {
+            format!("{} dissolves without an oxidant, as {}.", text::capital(&solid.name), products_text(liquor, &path))
+        }
         Verdict::Opposed => format!(
             "{} does not dissolve by acid or ligands alone to {:.1e} mol/kg at pH {:.1}.",
             text::capital(&solid.name),
             reach_of(solid),
             liquor.ph()
         ),
-        _ => format!("{} is close to its solubility: acid or ligands alone may or may not take it.", text::capital(&solid.name)),
+        _ => format!(
+            "{} is close to its solubility: acid or ligands alone may or may not take it.",
+            text::capital(&solid.name)
+        ),
     };
     let equation = path.half(liquor, species).whole();
     let mut finding = Finding::new(question, &solid.name, Some(against), verdict, attention, statement);
@@ -110,7 +111,10 @@ fn pairing(setting: &Setting, solid: &Solid, driver: &Driver) -> Option<Finding>
     if path.electrons < 0.0 && !driver.can_reduce() {
         return None;
     }
-    let force = Estimate::new(base.value, setting.input_spread(base.standard_uncertainty, |s| s.force(solid, &driver.label, &path), base.value));
+    let force = Estimate::new(
+        base.value,
+        setting.input_spread(base.standard_uncertainty, |s| s.force(solid, &driver.label, &path), base.value),
+    );
     let named = matches!(driver.origin, Origin::Named(_) | Origin::Measured);
     if force.value < -NOT_WORTH_A_LINE && !named && driver.origin != Origin::Acid {
         return None;
@@ -145,11 +149,15 @@ fn pairing(setting: &Setting, solid: &Solid, driver: &Driver) -> Option<Finding>
     finding.reasons.extend(route_reasons(setting, solid, driver, &path));
     finding.reasons.extend(mineral_practice(liquor, record));
     if let Some(record) = held_back {
-        finding.reasons.push(format!("Held back in practice: {} Becomes fast: {}", text::sentence(&record.practice), text::sentence(&record.fast_when)));
+        finding.reasons.push(format!(
+            "Held back in practice: {} Becomes fast: {}",
+            text::sentence(&record.practice),
+            text::sentence(&record.fast_when)
+        ));
         finding.sources.push(record.source.clone());
     }
     if let Some(film) = &film {
-        finding.reasons.extend(film.reasons(liquor));
+        finding.reasons.extend(film.reasons());
         finding.sources.extend(film.record.map(|r| r.source.clone()));
     }
     finding.reasons.extend(alloy_reasons(solid));
@@ -160,17 +168,31 @@ fn pairing(setting: &Setting, solid: &Solid, driver: &Driver) -> Option<Finding>
 /// True when the driver's reduced side is the solid itself.
 fn deposits_itself(record: &Species, driver: &Driver, liquor: &Liquor) -> bool {
     let Some(couple) = &driver.couple else { return false };
-    let same_element = record.formula.composition.len() == 1 && couple.oxidised.constituent.element() == record.constituents.first().and_then(|(c, _)| c.element());
+    let same_element = record.formula.composition.len() == 1
+        && couple.oxidised.constituent.element() == record.constituents.first().and_then(|(c, _)| c.element());
     let is_own_oxidant = couple.oxidised.leading == record.id;
-    (driver.deposits_metal && (same_element || liquor.library.get(couple.reduced.leading).text == record.text)) || is_own_oxidant
+    (driver.deposits_metal && (same_element || liquor.library.get(couple.reduced.leading).text == record.text))
+        || is_own_oxidant
 }
 
 fn attention(solid: &Solid, verdict: Verdict, protected: bool, broken: bool) -> Attention {
     match (solid.duty, verdict) {
         (_, Verdict::NotAssessed) => Attention::Review,
-        (Duty::Resist, Verdict::Driven) if protected => if broken { Attention::Review } else { Attention::Note },
+        (Duty::Resist, Verdict::Driven) if protected => {
+            if broken {
+                Attention::Review
+            } else {
+                Attention::Note
+            }
+        }
         (Duty::Resist, Verdict::Driven) => Attention::Act,
-        (Duty::Resist, Verdict::NearBalance) => if protected && !broken { Attention::Note } else { Attention::Review },
+        (Duty::Resist, Verdict::NearBalance) => {
+            if protected && !broken {
+                Attention::Note
+            } else {
+                Attention::Review
+            }
+        }
         (Duty::Resist, Verdict::Opposed) | (Duty::Dissolve, Verdict::Driven | Verdict::Opposed) => Attention::Note,
         (Duty::Dissolve, Verdict::NearBalance) => Attention::Review,
     }
@@ -193,18 +215,27 @@ fn statement(
     let product = products_text(liquor, path);
     let by = &driver.pretty;
     let action = match (driver.deposits_metal, path.electrons < 0.0) {
-        (true, _) => format!("throws {} out of solution and goes to {product}", driver.pretty.split('/').next_back().unwrap_or("the metal")),
+        (true, _) => format!(
+            "throws {} out of solution and goes to {product}",
+            driver.pretty.split('/').next_back().unwrap_or("the metal")
+        ),
         (false, true) => format!("is reduced by {by} to {product}"),
         (false, false) => format!("is driven by {by} to {product}"),
     };
     let practice = if held_back { ", but practice finds this couple too slow to count on" } else { "" };
     match verdict {
         Verdict::Driven => match film {
-            Some(f) => format!("{name} {action} ({millivolts}) unless its film of {} holds{practice}; {}.", f.name(liquor), f.words()),
+            Some(f) => format!(
+                "{name} {action} ({millivolts}) unless its film of {} holds{practice}; {}.",
+                f.name(liquor),
+                f.words()
+            ),
             None => format!("{name} {action} ({millivolts}){practice}."),
         },
         Verdict::Opposed => format!("{name} holds against {by} ({millivolts})."),
-        Verdict::NearBalance => format!("{name} against {by} is near balance ({millivolts}): it may go either way{practice}."),
+        Verdict::NearBalance => {
+            format!("{name} against {by} is near balance ({millivolts}): it may go either way{practice}.")
+        }
         Verdict::NotAssessed => format!("{name} against {by} is not assessed."),
     }
 }
@@ -242,7 +273,9 @@ fn products_text(liquor: &Liquor, path: &Path) -> String {
 fn reach_reason(solid: &Solid) -> String {
     match (solid.duty, solid.amount) {
         (Duty::Resist, _) => format!("Attack is judged at {CORROSION_LIMIT:.0e} mol/kg of dissolved metal."),
-        (Duty::Dissolve, Some(m)) => format!("Judged at the concentration that the whole feed would reach, {m:.2e} mol/kg."),
+        (Duty::Dissolve, Some(m)) => {
+            format!("Judged at the concentration that the whole feed would reach, {m:.2e} mol/kg.")
+        }
         (Duty::Dissolve, None) => format!("No amount is given; judged at {FEED_WITHOUT_AMOUNT} mol/kg."),
     }
 }
@@ -261,7 +294,12 @@ fn route_reasons(setting: &Setting, solid: &Solid, driver: &Driver, taken: &Path
 }
 
 fn mineral_practice(liquor: &Liquor, record: &Species) -> Option<String> {
-    let found = liquor.library.kinetics.sluggish.iter().find(|s| s.formula == record.text && (s.form.is_none() || s.form == record.form))?;
+    let found = liquor
+        .library
+        .kinetics
+        .sluggish
+        .iter()
+        .find(|s| s.formula == record.text && (s.form.is_none() || s.form == record.form))?;
     Some(format!("Practice: {}", text::sentence(&found.practice)))
 }
 
@@ -285,16 +323,21 @@ pub struct Film<'a> {
     /// The alloy's own record says that practice relies on a film.
     alloy: bool,
     in_range: bool,
+    /// What breaks it stands above the level at which practice gives it up.
+    lost: bool,
 }
 
 impl Film<'_> {
     /// Practice relies on this film at this pH, and thermodynamics or the alloy's record bears it out.
     pub fn holds(&self) -> bool {
-        self.in_range && (self.record.is_some_and(|r| r.protective) || self.alloy)
+        self.in_range && !self.lost && (self.record.is_some_and(|r| r.protective) || self.alloy)
     }
 
     fn name(&self, liquor: &Liquor) -> String {
         match (self.solid, self.record) {
+            (_, Some(record)) if self.alloy => {
+                liquor.library.find(&record.film).map_or(record.film.clone(), |s| s.formula.pretty())
+            }
             (Some(species), _) => species.pretty(),
             (None, Some(record)) => liquor.library.find(&record.film).map_or(record.film.clone(), Species::pretty),
             (None, None) => "oxide".into(),
@@ -305,14 +348,16 @@ impl Film<'_> {
         match (self.holds(), self.broken_by.is_empty()) {
             (true, true) => "practice relies on that film",
             (true, false) => "practice relies on that film, and something here can break it",
+            (false, _) if self.lost => "practice does not rely on that film at this level of what breaks it",
             (false, _) => "such a film is no protection that practice relies on",
         }
     }
 
-    fn reasons(&self, liquor: &Liquor) -> Vec<String> {
+    fn reasons(&self) -> Vec<String> {
         let mut reasons = Vec::new();
-        if let Some(species) = self.solid {
-            reasons.push(format!("{} is more stable here than the dissolved product: a film can form.", species.pretty()));
+        if let Some(species) = self.solid.filter(|_| !self.alloy || self.record.is_none()) {
+            reasons
+                .push(format!("{} is more stable here than the dissolved product: a film can form.", species.pretty()));
         }
         if let Some(record) = self.record {
             reasons.extend(record.note.as_deref().map(text::sentence));
@@ -321,7 +366,6 @@ impl Film<'_> {
                 reasons.push(format!("Film broken by {}: {}{here}", breaker.what, text::sentence(&breaker.text)));
             }
         }
-        let _ = liquor;
         reasons
     }
 }
@@ -339,9 +383,13 @@ pub fn film<'a>(setting: &'a Setting, solid: &Solid, e: f64) -> Option<Film<'a>>
     if stable.is_none() && !alloy_film {
         return None;
     }
-    let in_range = record.is_none_or(|r| r.ph_from.is_none_or(|ph| liquor.ph() >= ph) && r.ph_to.is_none_or(|ph| liquor.ph() <= ph));
+    let lost = record.is_some_and(|r| {
+        r.broken_by.iter().any(|b| b.act_above_mol_kg.is_some_and(|threshold| above(liquor, b, threshold)))
+    });
+    let in_range = record
+        .is_none_or(|r| r.ph_from.is_none_or(|ph| liquor.ph() >= ph) && r.ph_to.is_none_or(|ph| liquor.ph() <= ph));
     let broken_by = record.map_or_else(Vec::new, |r| r.broken_by.iter().filter(|b| present(liquor, b)).collect());
-    Some(Film { solid: stable, record, broken_by, alloy: alloy_film, in_range })
+    Some(Film { solid: stable, record, broken_by, alloy: alloy_film, in_range, lost })
 }
 
 /// Element whose oxide makes the film: chromium from about 10.5 % in an alloy (the usual bound of stainless steels), else
@@ -356,8 +404,11 @@ fn film_element(solid: &Solid, base: Option<&str>, element: &Species) -> String 
 
 /// Whether what breaks a film is in the liquor above its threshold.
 fn present(liquor: &Liquor, breaker: &FilmBreaker) -> bool {
+    above(liquor, breaker, breaker.above_mol_kg.unwrap_or(0.0))
+}
+
+fn above(liquor: &Liquor, breaker: &FilmBreaker, threshold: f64) -> bool {
     let Some(species) = breaker.species.as_deref().and_then(|s| liquor.library.dissolved(s).ok()) else { return false };
-    let threshold = breaker.above_mol_kg.unwrap_or(0.0);
     species.constituents.iter().filter(|(c, _)| !is_solvent(c)).any(|(c, _)| liquor.total(c) > threshold)
 }
 

@@ -5,9 +5,9 @@ use crate::chemistry::Element;
 use crate::equilibrium::states::{self, Basis, StateForm};
 use crate::equilibrium::{Closer, Couple, Liquor, couples};
 use crate::library::SpeciesId;
-use crate::library::tables::InertRecord;
-use crate::thermo::equation::Equation;
+use crate::library::tables::{InertClass, InertRecord};
 use crate::quantity::Estimate;
+use crate::thermo::equation::Equation;
 
 /// Where a driver comes from.
 #[derive(Debug, Clone, PartialEq)]
@@ -77,7 +77,11 @@ pub fn drivers<'l>(case: &Case<'l>, liquor: &Liquor<'l>) -> Vec<Driver<'l>> {
                 continue;
             }
             used.push(oxidised);
-            list.push(driver(case, liquor, couple));
+            let driver = driver(case, liquor, couple);
+            let inert = driver.held_back.is_some_and(|r| r.class == InertClass::Inert);
+            if !inert || matches!(driver.origin, Origin::Named(_)) {
+                list.push(driver);
+            }
         }
     }
     list.extend(solid_oxidants(case, liquor));
@@ -125,9 +129,10 @@ fn is_usual(liquor: &Liquor, couple: &Couple) -> bool {
 
 fn driver<'l>(case: &Case<'l>, liquor: &Liquor<'l>, couple: Couple) -> Driver<'l> {
     let library = liquor.library;
-    let named = case.oxidants.iter().find(|o| {
-        library.get(o.species).constituents.iter().any(|(c, _)| *c == couple.oxidised.constituent)
-    });
+    let named = case
+        .oxidants
+        .iter()
+        .find(|o| library.get(o.species).constituents.iter().any(|(c, _)| *c == couple.oxidised.constituent));
     let symbol = couple.oxidised.constituent.element().map_or("", |e| e.symbol());
     let origin = match (named, symbol) {
         (_, "H") => Origin::Acid,
@@ -194,12 +199,15 @@ fn solid_oxidants<'l>(case: &Case<'l>, liquor: &Liquor<'l>) -> Vec<Driver<'l>> {
         if !species.is_condensed() {
             continue;
         }
-        for (constituent, _) in species.constituents.iter().filter(|(c, _)| c.oxidation() > 0.0 && c.element().is_some()) {
+        for (constituent, _) in
+            species.constituents.iter().filter(|(c, _)| c.oxidation() > 0.0 && c.element().is_some())
+        {
             let Some(oxidised) = states::condensed(liquor, constituent).into_iter().find(|f| f.leading == id) else {
                 continue;
             };
             let Some(element) = constituent.element() else { continue };
-            let lower = states::states_of(liquor, element).into_iter().filter(|s| s.oxidation() < constituent.oxidation());
+            let lower =
+                states::states_of(liquor, element).into_iter().filter(|s| s.oxidation() < constituent.oxidation());
             let best = lower
                 .filter_map(|s| states::in_liquor(liquor, &s, couples::ASSUMED_LEAST * 1e3))
                 .map(|reduced| couples::couple(liquor, oxidised.clone(), reduced))

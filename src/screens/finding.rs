@@ -127,7 +127,14 @@ pub struct Finding {
 
 impl Finding {
     /// A finding with its sentence; the numbers are added by the screen.
-    pub fn new(question: Question, subject: &str, against: Option<&str>, verdict: Verdict, attention: Attention, statement: String) -> Self {
+    pub fn new(
+        question: Question,
+        subject: &str,
+        against: Option<&str>,
+        verdict: Verdict,
+        attention: Attention,
+        statement: String,
+    ) -> Self {
         let id = [Some(question.name()), Some(subject), against]
             .into_iter()
             .flatten()

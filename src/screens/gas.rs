@@ -9,10 +9,10 @@ use crate::equilibrium::states::{self as forms, Basis, StateForm};
 use crate::equilibrium::{Closer, Liquor};
 use crate::library::Species;
 use crate::library::record::State;
-use crate::library::tables::GasRecord;
-use crate::thermo::equation::Equation;
+use crate::library::tables::{GasRecord, InertClass};
 use crate::quantity::{Estimate, FARADAY};
 use crate::scenario::Duty;
+use crate::thermo::equation::Equation;
 
 use super::attack::Products;
 use super::dissolution;
@@ -60,7 +60,7 @@ pub fn screen(setting: &Setting) -> Vec<Finding> {
     let mut findings = Vec::new();
     for record in &library.gases {
         let Some(species) = library.in_state(&record.formula, State::Gas) else { continue };
-        let mut releases = releases(setting, species);
+        let mut releases = releases(setting, record, species);
         releases.sort_by(|a, b| rank(b).total_cmp(&rank(a)));
         findings.extend(releases.into_iter().filter_map(|r| finding(setting, record, species, r)).take(3));
     }
@@ -72,18 +72,32 @@ fn rank(release: &Release) -> f64 {
     release.ln_pressure.value.min(0.0) + if release.held_back.is_some() { -1e3 } else { 0.0 }
 }
 
-fn releases(setting: &Setting, gas: &Species) -> Vec<Release> {
+fn releases(setting: &Setting, record: &GasRecord, gas: &Species) -> Vec<Release> {
     let mut list: Vec<Release> = Vec::new();
     list.extend(as_mixed(setting, gas));
+    let held = !list.is_empty();
     for (element, count, oxidation) in key_elements(gas) {
         for state in forms::states_of(&setting.liquor, element) {
+            if !forms_from(setting, record, &state) {
+                continue;
+            }
             let source = Source { gas, element, count, oxidation, state };
             list.extend(source.oxidised(setting));
-            list.extend(source.reduced(setting));
+            // What the liquor holds already is not made by a reductant in any amount that matters.
+            list.extend(source.reduced(setting).filter(|_| !held));
         }
     }
     list.extend(from_solids(setting, gas));
     list
+}
+
+/// Whether practice sees the gas form from this state.
+fn forms_from(setting: &Setting, record: &GasRecord, state: &Constituent) -> bool {
+    let holds = |formula: &String| {
+        let known = setting.liquor.library.records(formula);
+        known.iter().any(|s| s.constituents.iter().any(|(c, _)| c == state))
+    };
+    record.formed_from.is_empty() || record.formed_from.iter().any(holds)
 }
 
 /// Elements of a gas that come in several states, with their count and summed oxidation number; the solvent's H and O only
@@ -125,7 +139,8 @@ fn as_mixed(setting: &Setting, gas: &Species) -> Option<Release> {
     let held = gas.constituents.iter().find(|(c, _)| !is_solvent(c)).map(|(c, _)| c);
     let source = held.and_then(|c| forms::present(liquor, c)).map(|f| f.leading);
     let equation = source.filter(|id| liquor.library.get(*id).text != gas.text).map(|id| {
-        let count: f64 = liquor.library.get(id).constituents.iter().filter(|(c, _)| Some(c) == held).map(|(_, n)| n).sum();
+        let count: f64 =
+            liquor.library.get(id).constituents.iter().filter(|(c, _)| Some(c) == held).map(|(_, n)| n).sum();
         let wanted: f64 = gas.constituents.iter().filter(|(c, _)| Some(c) == held).map(|(_, n)| n).sum();
         Closer::new(liquor).close(&[(id, -wanted / count), (gas.id, 1.0)]).whole()
     });
@@ -206,14 +221,27 @@ impl Source<'_> {
         );
         let half = self.half(liquor, &form);
         let equation = driver.half.as_ref().map(|red| half.plus(&red.times(-half.electrons / red.electrons)).whole());
-        let from_oxidant = driver.couple.as_ref().map(|c| {
-            (liquor.total(&c.oxidised.constituent) * c.electrons / n, c.oxidised.constituent.roman())
-        });
-        let from_source = (!is_solvent(&self.state)).then(|| (liquor.total(&self.state) / self.count, self.state.roman()));
-        let ceiling = [from_oxidant.filter(|(m, _)| *m > 0.0), from_source].into_iter().flatten().min_by(|a, b| a.0.total_cmp(&b.0));
-        let to_limit = format!("{} stands at 1 bar over this liquor at {:.2} V.", self.gas.pretty(), driver.potential.value - thermal * ln / n);
+        let from_oxidant = driver
+            .couple
+            .as_ref()
+            .map(|c| (liquor.total(&c.oxidised.constituent) * c.electrons / n, c.oxidised.constituent.roman()));
+        let from_source =
+            (!is_solvent(&self.state)).then(|| (liquor.total(&self.state) / self.count, self.state.roman()));
+        let ceiling = [from_oxidant.filter(|(m, _)| *m > 0.0), from_source]
+            .into_iter()
+            .flatten()
+            .min_by(|a, b| a.0.total_cmp(&b.0));
+        let to_limit = format!(
+            "{} stands at 1 bar over this liquor at {:.2} V.",
+            self.gas.pretty(),
+            driver.potential.value - thermal * ln / n
+        );
         Some(Release {
-            route: Route::Oxidised { by: driver.label.clone(), pretty: driver.pretty.clone(), origin: driver.origin.clone() },
+            route: Route::Oxidised {
+                by: driver.label.clone(),
+                pretty: driver.pretty.clone(),
+                origin: driver.origin.clone(),
+            },
             ln_pressure: Estimate::new(ln, spread),
             equation,
             ceiling,
@@ -239,14 +267,22 @@ impl Source<'_> {
             .min_by(|a, b| a.1.value.total_cmp(&b.1.value))?;
         let ln = self.ln_pressure(liquor, potential, e.value)?;
         let form = forms::present(liquor, &self.state)?;
-        let reduced_state = self.gas.constituents.iter().find(|(c, _)| c.element() == Some(self.element)).map(|(c, _)| c)?;
-        let product = forms::gaseous(liquor, reduced_state, 1.0)
-            .unwrap_or_else(|| StateForm { constituent: reduced_state.clone(), potential: 0.0, leading: self.gas.id, basis: Basis::Gas(1.0) });
+        let reduced_state =
+            self.gas.constituents.iter().find(|(c, _)| c.element() == Some(self.element)).map(|(c, _)| c)?;
+        let product = forms::gaseous(liquor, reduced_state, 1.0).unwrap_or_else(|| StateForm {
+            constituent: reduced_state.clone(),
+            potential: 0.0,
+            leading: self.gas.id,
+            basis: Basis::Gas(1.0),
+        });
         let couple = couples::couple(liquor, form.clone(), product);
         let record = liquor.library.get(solid.material.species());
         let held_back = couples::held_back(liquor, &couple, None)
-            .or_else(|| couples::held_back(liquor, &couple, Some(&record.text)))
-            .map(|r| text::sentence(&r.practice));
+            .or_else(|| couples::held_back(liquor, &couple, Some(&record.text)));
+        if held_back.is_some_and(|r| r.class == InertClass::Inert) {
+            return None;
+        }
+        let held_back = held_back.map(|r| text::sentence(&r.practice));
         let spread = spread_of(setting, self.gas, n * e.standard_uncertainty * FARADAY / liquor.temperature().rt());
         let ceiling = solid.amount.map(|m| (m * per_formula / n, solid.name.clone()));
         let path = dissolution::leading_path(liquor, solid, e.value + 1e-6, Products::Dissolved)?;
@@ -271,7 +307,8 @@ fn reductant(setting: &Setting, solid: &Solid) -> Option<(Estimate, f64)> {
     let liquor = &setting.liquor;
     let hydrogen = setting.drivers.iter().find(|d| d.origin == Origin::Acid)?.potential.value;
     let path = dissolution::leading_path(liquor, solid, hydrogen, Products::Dissolved)?;
-    let protected = dissolution::film(setting, solid, hydrogen).is_some_and(|f| f.holds() && solid.duty == Duty::Resist);
+    let protected =
+        dissolution::film(setting, solid, hydrogen).is_some_and(|f| f.holds() && solid.duty == Duty::Resist);
     (path.electrons > 0.0 && !protected).then(|| path.potential(liquor).map(|e| (e, path.electrons))).flatten()
 }
 
@@ -282,7 +319,10 @@ fn from_solids(setting: &Setting, gas: &Species) -> Vec<Release> {
     for solid in &setting.case.solids {
         let Material::Compound { species, .. } = solid.material else { continue };
         let record = liquor.library.get(species);
-        let [(shared, per_gas)] = gas.constituents.iter().filter(|(c, _)| !is_solvent(c)).collect::<Vec<_>>()[..] else { continue };
+        let [(shared, per_gas)] = gas.constituents.iter().filter(|(c, _)| !is_solvent(c)).collect::<Vec<_>>()[..]
+        else {
+            continue;
+        };
         let Some((_, per_solid)) = record.constituents.iter().find(|(c, _)| c == shared) else { continue };
         if shared.element().is_some_and(|e| matches!(e.symbol(), "Cl" | "Br" | "I")) {
             continue;
@@ -327,8 +367,13 @@ fn from_solids(setting: &Setting, gas: &Species) -> Vec<Release> {
 /// Whether an oxidant of the liquor turns sulfide into sulfur before it can leave as gas.
 fn oxidant_keeps_sulfur(setting: &Setting, constituent: &Constituent) -> Option<String> {
     let sulfide = constituent.element().is_some_and(|e| e.symbol() == "S") && constituent.oxidation() < 0.0;
-    let strong = setting.drivers.iter().find(|d| d.held_back.is_none() && d.origin != Origin::Acid && d.potential.value > 0.45)?;
-    sulfide.then(|| format!("While {} is there it takes sulfide to sulfur or sulfate; without it the gas comes.", strong.pretty))
+    let strong = setting
+        .drivers
+        .iter()
+        .find(|d| d.held_back.is_none() && d.origin != Origin::Acid && d.potential.value > 0.45)?;
+    sulfide.then(|| {
+        format!("While {} is there it takes sulfide to sulfur or sulfate; without it the gas comes.", strong.pretty)
+    })
 }
 
 fn finding(setting: &Setting, record: &GasRecord, gas: &Species, release: Release) -> Option<Finding> {
@@ -338,7 +383,9 @@ fn finding(setting: &Setting, record: &GasRecord, gas: &Species, release: Releas
     if p < WORTH_A_LINE * lowest * BAR_PER_PPM || release.ceiling.as_ref().is_some_and(|(m, _)| *m <= 1e-12) {
         return None;
     }
-    let over = |ppm: f64| Estimate::new(release.ln_pressure.value - (ppm * BAR_PER_PPM).ln(), release.ln_pressure.standard_uncertainty);
+    let over = |ppm: f64| {
+        Estimate::new(release.ln_pressure.value - (ppm * BAR_PER_PPM).ln(), release.ln_pressure.standard_uncertainty)
+    };
     let act_level = limits.act_level();
     let attention = match (release.held_back.is_some(), Verdict::of(over(act_level))) {
         (true, _) => Attention::Review,
@@ -351,11 +398,13 @@ fn finding(setting: &Setting, record: &GasRecord, gas: &Species, release: Releas
     let route = route_words(&release.route);
     let pressure = text::pressure(p);
     let statement = match &release.held_back {
-        Some(_) => format!("{who} is permitted {route} ({pressure} at equilibrium) but practice finds that route slow or forestalled."),
+        Some(_) => format!(
+            "{who} is permitted {route} ({pressure} at equilibrium) but practice finds that route slow or forestalled."
+        ),
         None => format!("{who} can form {route}: {pressure} at equilibrium, {}.", limits.words()),
     };
     let against = match &release.route {
-        Route::AsMixed => "liquor as mixed".to_owned(),
+        Route::AsMixed => "the liquor as mixed".to_owned(),
         Route::Oxidised { by, .. } => by.clone(),
         Route::Reduced { by } => by.clone(),
         Route::FromSolid { solid } => format!("acid on {solid}"),
@@ -400,7 +449,7 @@ fn route_words(route: &Route) -> String {
         Route::AsMixed => "from the liquor as mixed".into(),
         Route::Oxidised { pretty, origin: Origin::Measured, .. } => format!("at the {pretty}"),
         Route::Oxidised { pretty, .. } => format!("by {pretty}"),
-        Route::Reduced { by } => format!("where {by} gives electrons"),
+        Route::Reduced { by } => format!("where the liquor meets {by}"),
         Route::FromSolid { solid } => format!("where acid meets {solid}"),
     }
 }
@@ -436,7 +485,9 @@ impl Limits {
     fn words(&self) -> String {
         let mut parts = Vec::new();
         parts.extend(self.short.map(|v| format!("short-term limit {}", text::ppm(v))));
-        parts.extend(self.short.is_none().then_some(self.twa).flatten().map(|v| format!("shift limit {}", text::ppm(v))));
+        parts.extend(
+            self.short.is_none().then_some(self.twa).flatten().map(|v| format!("shift limit {}", text::ppm(v))),
+        );
         parts.extend(self.idlh.map(|v| format!("IDLH {}", text::ppm(v))));
         parts.extend(self.flammable.map(|v| format!("flammable from {}", text::ppm(v))));
         parts.join(", ")

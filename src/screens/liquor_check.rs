@@ -24,8 +24,12 @@ fn measured_against_computed(setting: &Setting) -> Option<Finding> {
     let nearest = setting
         .drivers
         .iter()
-        .filter(|d| d.origin != Origin::Measured && d.held_back.is_none() && !d.deposits_metal && d.origin != Origin::Acid)
-        .min_by(|a, b| (a.potential.value - measured.value).abs().total_cmp(&(b.potential.value - measured.value).abs()))?;
+        .filter(|d| {
+            d.origin != Origin::Measured && d.held_back.is_none() && !d.deposits_metal && d.origin != Origin::Acid
+        })
+        .min_by(|a, b| {
+            (a.potential.value - measured.value).abs().total_cmp(&(b.potential.value - measured.value).abs())
+        })?;
     let gap = difference(*measured, nearest.potential);
     let agrees = gap.value.abs() <= 2.0 * gap.standard_uncertainty;
     let (attention, words) = if agrees {
@@ -37,7 +41,14 @@ fn measured_against_computed(setting: &Setting) -> Option<Finding> {
         "The measured potential is {:.3} V against SHE ({electrode}); {} computes to {:.3} V, {words}. The measured value governs the verdicts.",
         measured.value, nearest.pretty, nearest.potential.value
     );
-    let mut finding = Finding::new(Question::Liquor, "measured potential", Some(&nearest.label), Verdict::of(gap), attention, statement);
+    let mut finding = Finding::new(
+        Question::Liquor,
+        "measured potential",
+        Some(&nearest.label),
+        Verdict::of(gap),
+        attention,
+        statement,
+    );
     finding.verdict = if agrees { Verdict::NearBalance } else { finding.verdict };
     finding.driving_force = Some(gap);
     finding.cautions.push("general".into());
@@ -78,7 +89,8 @@ fn boiling(setting: &Setting) -> Option<Finding> {
             "At {:.0} °C the water vapour alone is {vapour:.1} bar: a pressure vessel, and gas pressures add to it.",
             t.celsius()
         );
-        let mut finding = Finding::new(Question::Liquor, "pressure", None, Verdict::NotAssessed, Attention::Review, statement);
+        let mut finding =
+            Finding::new(Question::Liquor, "pressure", None, Verdict::NotAssessed, Attention::Review, statement);
         finding.quantities.insert("water_vapour_bar".into(), vapour);
         finding.cautions.push("pressure".into());
         finding.reasons.push(text::sentence("Saturation pressure by IAPWS-IF97"));

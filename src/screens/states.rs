@@ -7,8 +7,8 @@ use crate::equilibrium::couples::{self, form_spread};
 use crate::equilibrium::states::{self as forms, Basis, StateForm};
 use crate::equilibrium::{Closer, Liquor};
 use crate::library::tables::InertRecord;
-use crate::thermo::equation::Equation;
 use crate::quantity::{Estimate, FARADAY};
+use crate::thermo::equation::Equation;
 
 use super::drivers::plain_form;
 use super::finding::{Attention, Finding, Question, Verdict};
@@ -60,7 +60,10 @@ pub fn ladder<'l>(liquor: &Liquor<'l>, element: Element) -> Option<Ladder<'l>> {
     let states = forms::states_of(liquor, element);
     let held: f64 = states.iter().map(|s| liquor.total(s)).sum();
     let total = if held > 0.0 { couples::ASSUMED_SHARE * held } else { USUAL_TOTAL };
-    let list: Vec<StateForm> = states.iter().filter_map(|s| forms::in_liquor(liquor, s, total)).collect();
+    let reached =
+        |s: &&crate::chemistry::Constituent| liquor.potential(s).is_some() || !couples::never_reached(liquor, s);
+    let list: Vec<StateForm> =
+        states.iter().filter(reached).filter_map(|s| forms::in_liquor(liquor, s, total)).collect();
     if list.len() < 3 {
         return None;
     }
@@ -102,7 +105,12 @@ fn bracket(hull: &[usize], i: usize) -> Option<(usize, usize)> {
     (hull[above] != i && above > 0).then(|| (hull[above - 1], hull[above]))
 }
 
-fn disproportionation<'l>(liquor: &Liquor<'l>, state: &StateForm, lower: &StateForm, upper: &StateForm) -> Disproportionation<'l> {
+fn disproportionation<'l>(
+    liquor: &Liquor<'l>,
+    state: &StateForm,
+    lower: &StateForm,
+    upper: &StateForm,
+) -> Disproportionation<'l> {
     let down = couples::couple(liquor, state.clone(), lower.clone());
     let up = couples::couple(liquor, upper.clone(), state.clone());
     let thermal = liquor.temperature().rt() / FARADAY;
@@ -163,13 +171,25 @@ fn unstable(setting: &Setting, liquor: &Liquor, rung: &Rung, apart: &Disproporti
     let words = text::millivolts(apart.driving_force);
     let statement = match (verdict, persists) {
         (Verdict::Driven, false) => {
-            format!("{subject}, here {}, is unstable: it goes to {} and {} ({words}).", name(&rung.form), name(&apart.lower), name(&apart.upper))
+            format!(
+                "{subject}, here {}, is unstable: it goes to {} and {} ({words}).",
+                name(&rung.form),
+                name(&apart.lower),
+                name(&apart.upper)
+            )
         }
         (Verdict::Driven, true) => format!(
             "{subject}, here {}, lies above {} and {} ({words}) but practice sees it persist.",
-            name(&rung.form), name(&apart.lower), name(&apart.upper)
+            name(&rung.form),
+            name(&apart.lower),
+            name(&apart.upper)
         ),
-        _ => format!("{subject}, here {}, is close to balance with {} and {} ({words}).", name(&rung.form), name(&apart.lower), name(&apart.upper)),
+        _ => format!(
+            "{subject}, here {}, is close to balance with {} and {} ({words}).",
+            name(&rung.form),
+            name(&apart.lower),
+            name(&apart.upper)
+        ),
     };
     let mut finding = Finding::new(Question::State, &subject, None, verdict, attention, statement);
     finding.driving_force = Some(apart.driving_force);

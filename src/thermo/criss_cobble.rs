@@ -26,22 +26,13 @@ struct Line {
     b: Row,
 }
 
-const CATIONS: Line = Line {
-    a: [3.9, 10.3, 16.2, 23.3, 29.9, 36.6],
-    b: [0.955, 0.876, 0.792, 0.711, 0.630, 0.548],
-};
-const ANIONS: Line = Line {
-    a: [-5.1, -13.0, -21.3, -30.2, -38.7, -49.2],
-    b: [0.969, 1.000, 0.989, 0.981, 0.978, 0.972],
-};
-const OXYANIONS: Line = Line {
-    a: [-14.0, -31.0, -46.4, -67.0, -86.5, -106.0],
-    b: [1.217, 1.476, 1.687, 2.020, 2.320, 2.618],
-};
-const ACID_OXYANIONS: Line = Line {
-    a: [-13.5, -30.3, -50.0, -70.0, -90.0, -110.0],
-    b: [1.380, 1.894, 2.381, 2.960, 3.530, 4.100],
-};
+const CATIONS: Line = Line { a: [3.9, 10.3, 16.2, 23.3, 29.9, 36.6], b: [0.955, 0.876, 0.792, 0.711, 0.630, 0.548] };
+const ANIONS: Line =
+    Line { a: [-5.1, -13.0, -21.3, -30.2, -38.7, -49.2], b: [0.969, 1.000, 0.989, 0.981, 0.978, 0.972] };
+const OXYANIONS: Line =
+    Line { a: [-14.0, -31.0, -46.4, -67.0, -86.5, -106.0], b: [1.217, 1.476, 1.687, 2.020, 2.320, 2.618] };
+const ACID_OXYANIONS: Line =
+    Line { a: [-13.5, -30.3, -50.0, -70.0, -90.0, -110.0], b: [1.380, 1.894, 2.381, 2.960, 3.530, 4.100] };
 
 /// Entropy of H⁺(aq) on the absolute scale at 298.15 K, J/(mol K).
 const HYDROGEN_ION_ENTROPY: f64 = -5.0 * CALORIE;
@@ -88,20 +79,11 @@ pub fn hydrogen_ion_gibbs_change(t: Kelvin) -> Result<f64, RangeError> {
     check_temperature(t)?;
     let gained = HYDROGEN_ION.map(|s| s * CALORIE - HYDROGEN_ION_ENTROPY);
     let heat_capacity = interpolate(&per_logarithm(gained), t);
-    Ok(with_mean_heat_capacity(
-        HYDROGEN_ION_ENTROPY,
-        heat_capacity,
-        t,
-    ))
+    Ok(with_mean_heat_capacity(HYDROGEN_ION_ENTROPY, heat_capacity, t))
 }
 
 fn check_temperature(t: Kelvin) -> Result<(), RangeError> {
-    check_range(
-        "temperature of the correspondence principle in K",
-        t.0,
-        273.15,
-        573.15,
-    )
+    check_range("temperature of the correspondence principle in K", t.0, 273.15, 573.15)
 }
 
 /// G(T) − G(298.15 K), J/mol, from entropy at 298.15 K and mean heat capacity, J/(mol K).
@@ -162,12 +144,7 @@ mod tests {
     use crate::thermo::water;
     use std::f64::consts::LN_10;
 
-    const CLASSES: [IonClass; 4] = [
-        IonClass::Cation,
-        IonClass::Anion,
-        IonClass::Oxyanion,
-        IonClass::AcidOxyanion,
-    ];
+    const CLASSES: [IonClass; 4] = [IonClass::Cation, IonClass::Anion, IonClass::Oxyanion, IonClass::AcidOxyanion];
 
     /// Apparent G(T) in J/mol of an ion from ΔfG° in kJ/mol and S° in J/(mol K), both conventional.
     fn ion(class: IonClass, charge: i32, gibbs: f64, entropy: f64, t: Kelvin) -> f64 {
@@ -181,23 +158,13 @@ mod tests {
     /// H2O(l) and OH⁻ of the NBS tables (1982): ΔfG° −237.129 and −157.244 kJ/mol, S°(OH⁻) −10.75 J/(mol K).
     #[test]
     fn ion_product_agrees_with_iapws() {
-        for (celsius, tolerance) in [
-            (0.0, 0.03),
-            (60.0, 0.01),
-            (100.0, 0.02),
-            (200.0, 0.06),
-            (300.0, 0.06),
-        ] {
+        for (celsius, tolerance) in [(0.0, 0.03), (60.0, 0.01), (100.0, 0.02), (200.0, 0.06), (300.0, 0.06)] {
             let t = Kelvin::from_celsius(celsius);
             let water = -237.129e3 + water::liquid_water_gibbs_change(t).unwrap();
-            let ions = ion(IonClass::Anion, -1, -157.244, -10.75, t)
-                + hydrogen_ion_gibbs_change(t).unwrap();
+            let ions = ion(IonClass::Anion, -1, -157.244, -10.75, t) + hydrogen_ion_gibbs_change(t).unwrap();
             let found = log10(ions - water, t);
             let expected = water::log10_ion_product(t, water::density(t).unwrap()).unwrap();
-            assert!(
-                (found - expected).abs() < tolerance,
-                "{celsius} °C: {found} against {expected}"
-            );
+            assert!((found - expected).abs() < tolerance, "{celsius} °C: {found} against {expected}");
         }
     }
 
@@ -207,15 +174,11 @@ mod tests {
     fn second_dissociation_of_carbonic_acid() {
         for celsius in [0.0, 25.0, 60.0, 90.0] {
             let t = Kelvin::from_celsius(celsius);
-            let expected = -107.8871 - 0.032_528_49 * t.0 + 5151.79 / t.0 + 38.925_61 * t.0.log10()
-                - 563_713.9 / (t.0 * t.0);
-            let ions = ion(IonClass::Oxyanion, -2, -527.81, -56.9, t)
-                + hydrogen_ion_gibbs_change(t).unwrap();
+            let expected =
+                -107.8871 - 0.032_528_49 * t.0 + 5151.79 / t.0 + 38.925_61 * t.0.log10() - 563_713.9 / (t.0 * t.0);
+            let ions = ion(IonClass::Oxyanion, -2, -527.81, -56.9, t) + hydrogen_ion_gibbs_change(t).unwrap();
             let found = log10(ions - ion(IonClass::AcidOxyanion, -1, -586.77, 91.2, t), t);
-            assert!(
-                (found - expected).abs() < 0.1,
-                "{celsius} °C: {found} against {expected}"
-            );
+            assert!((found - expected).abs() < 0.1, "{celsius} °C: {found} against {expected}");
         }
     }
 
@@ -224,8 +187,7 @@ mod tests {
     fn solubility_of_silver_chloride_in_boiling_water() {
         let t = Kelvin::from_celsius(100.0);
         let solid = -109.789e3 + with_mean_heat_capacity(96.2, 50.79, t);
-        let ions = ion(IonClass::Cation, 1, 77.107, 72.68, t)
-            + ion(IonClass::Anion, -1, -131.228, 56.5, t);
+        let ions = ion(IonClass::Cation, 1, 77.107, 72.68, t) + ion(IonClass::Anion, -1, -131.228, 56.5, t);
         let grams_per_litre = 10_f64.powf(0.5 * log10(ions - solid, t)) * 143.32 * 0.958;
         assert!((grams_per_litre - 0.021).abs() < 0.002, "{grams_per_litre}");
     }
@@ -234,22 +196,16 @@ mod tests {
     /// −35.25 at 150 °C from 20.1, by the straight lines of Criss and Cobble.
     #[test]
     fn mean_heat_capacity_leads_back_to_the_entropies_of_the_table() {
-        let cases = [
-            (IonClass::Cation, 1, 59.0, 100.0, 68.09, 8.37),
-            (IonClass::Oxyanion, -2, 20.1, 150.0, -35.25, 27.20),
-        ];
+        let cases =
+            [(IonClass::Cation, 1, 59.0, 100.0, 68.09, 8.37), (IonClass::Oxyanion, -2, 20.1, 150.0, -35.25, 27.20)];
         for (class, charge, conventional, celsius, expected, hydrogen) in cases {
             let t = Kelvin::from_celsius(celsius);
             let entropy = absolute_entropy(conventional, charge);
             let rise = t.0 - T_STANDARD.0;
             let logarithm = (t.0 / T_STANDARD.0).ln();
-            let mean = (gibbs_change(class, entropy, t).unwrap() + entropy * rise)
-                / (rise - t.0 * logarithm);
+            let mean = (gibbs_change(class, entropy, t).unwrap() + entropy * rise) / (rise - t.0 * logarithm);
             let found = entropy + mean * logarithm - f64::from(charge) * hydrogen;
-            assert!(
-                (found - expected).abs() < 0.05,
-                "{found} against {expected}"
-            );
+            assert!((found - expected).abs() < 0.05, "{found} against {expected}");
         }
     }
 
@@ -266,15 +222,10 @@ mod tests {
         let step = 1e-3;
         for class in CLASSES {
             for celsius in [25.0, 60.0, 100.0, 150.0, 200.0, 250.0] {
-                let at = |celsius: f64| {
-                    gibbs_change(class, 60.0, Kelvin::from_celsius(celsius)).unwrap()
-                };
+                let at = |celsius: f64| gibbs_change(class, 60.0, Kelvin::from_celsius(celsius)).unwrap();
                 let before = (at(celsius) - at(celsius - step)) / step;
                 let after = (at(celsius + step) - at(celsius)) / step;
-                assert!(
-                    (after - before).abs() < 0.01,
-                    "{class:?} at {celsius} °C: {before}, {after}"
-                );
+                assert!((after - before).abs() < 0.01, "{class:?} at {celsius} °C: {before}, {after}");
             }
         }
     }
@@ -284,10 +235,7 @@ mod tests {
         let row = per_logarithm(OXYANIONS.a);
         for (pair, nodes) in row.windows(2).zip(NODES_CELSIUS.windows(2)) {
             for part in [0.0, 0.2, 0.5, 0.8, 1.0] {
-                let value = interpolate(
-                    &row,
-                    Kelvin::from_celsius(nodes[0] + part * (nodes[1] - nodes[0])),
-                );
+                let value = interpolate(&row, Kelvin::from_celsius(nodes[0] + part * (nodes[1] - nodes[0])));
                 let (low, high) = (pair[0].min(pair[1]), pair[0].max(pair[1]));
                 assert!((low - 1e-9..=high + 1e-9).contains(&value));
             }

@@ -20,7 +20,8 @@ impl Equation {
     /// The equation in the smallest whole numbers (multipliers to 5000; otherwise as it is).
     pub fn whole(&self) -> Self {
         let all = || self.terms.iter().map(|(_, n)| *n).chain(std::iter::once(self.electrons));
-        let is_whole = |factor: f64| all().all(|n| (n * factor - (n * factor).round()).abs() < Self::ROUNDING * factor.max(1.0));
+        let is_whole =
+            |factor: f64| all().all(|n| (n * factor - (n * factor).round()).abs() < Self::ROUNDING * factor.max(1.0));
         let factor = (1..=5000).map(f64::from).find(|f| is_whole(*f)).unwrap_or(1.0);
         let scaled: Vec<i64> = all().map(|n| (n * factor).round() as i64).collect();
         let shared = scaled.iter().fold(0, |a, b| gcd(a, b.abs())).max(1) as f64;
@@ -28,10 +29,7 @@ impl Equation {
     }
 
     pub fn times(&self, factor: f64) -> Self {
-        Self {
-            terms: self.terms.iter().map(|(id, n)| (*id, n * factor)).collect(),
-            electrons: self.electrons * factor,
-        }
+        Self { terms: self.terms.iter().map(|(id, n)| (*id, n * factor)).collect(), electrons: self.electrons * factor }
     }
 
     /// Sum of two equations, what cancels left out.
@@ -105,4 +103,3 @@ pub fn add(terms: &mut Vec<(SpeciesId, f64)>, id: SpeciesId, n: f64) {
         None => terms.push((id, n)),
     }
 }
-

@@ -101,10 +101,7 @@ fn partner_sum(partners: &[(SpeciesId, f64)], library: &Library) -> f64 {
 }
 
 fn partner_change(partners: &[(SpeciesId, f64)], library: &Library, values: &[Estimate]) -> f64 {
-    partners
-        .iter()
-        .map(|(id, count)| count * (values[id.index()].value - library.get(*id).gibbs.value))
-        .sum()
+    partners.iter().map(|(id, count)| count * (values[id.index()].value - library.get(*id).gibbs.value)).sum()
 }
 
 /// ∫ of heat capacity and entropy from 298.15 K to T with changes of form on the way, J/mol.

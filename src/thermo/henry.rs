@@ -30,21 +30,12 @@ const CURVES: [Curve; 7] = [
 ];
 
 const fn curve(gas: &'static str, [a, b, c]: [f64; 3], from: f64, to: f64) -> Curve {
-    Curve {
-        gas,
-        a,
-        b,
-        c,
-        from,
-        to,
-    }
+    Curve { gas, a, b, c, from, to }
 }
 
 fn find(gas: &str) -> Result<&'static Curve, RangeError> {
     let found = CURVES.iter().find(|curve| curve.gas == gas);
-    found.ok_or_else(|| RangeError::NoSolubilityCurve {
-        gas: gas.to_owned(),
-    })
+    found.ok_or_else(|| RangeError::NoSolubilityCurve { gas: gas.to_owned() })
 }
 
 /// Temperatures between which the solubility of `gas` (`O2`, `CO2` …) was measured and its curve holds.
@@ -71,9 +62,7 @@ pub fn ln_henry_constant(gas: &str, t: Kelvin) -> Result<f64, RangeError> {
     check_range(&quantity, t.0, curve.from, curve.to)?;
     let reduced = t.0 / CRITICAL_TEMPERATURE;
     let tau = 1.0 - reduced;
-    let ratio = curve.a / reduced
-        + curve.b * tau.powf(0.355) / reduced
-        + curve.c * reduced.powf(-0.41) * tau.exp();
+    let ratio = curve.a / reduced + curve.b * tau.powf(0.355) / reduced + curve.c * reduced.powf(-0.41) * tau.exp();
     Ok(ratio + water::saturation_pressure(t)?.ln())
 }
 
@@ -114,10 +103,7 @@ mod tests {
                     continue;
                 }
                 let found = ln_henry_constant(gas, Kelvin(kelvin)).unwrap() - 1e4_f64.ln();
-                assert!(
-                    (found - expected).abs() < 2e-4,
-                    "{gas} at {kelvin} K: {found}"
-                );
+                assert!((found - expected).abs() < 2e-4, "{gas} at {kelvin} K: {found}");
             }
         }
     }
@@ -151,10 +137,7 @@ mod tests {
 
     #[test]
     fn unknown_gas_and_range_are_errors() {
-        assert!(matches!(
-            ln_solubility_molality("Cl2", Kelvin(300.0)),
-            Err(RangeError::NoSolubilityCurve { .. })
-        ));
+        assert!(matches!(ln_solubility_molality("Cl2", Kelvin(300.0)), Err(RangeError::NoSolubilityCurve { .. })));
         assert!(ln_solubility_molality("H2S", Kelvin(560.0)).is_err());
     }
 }

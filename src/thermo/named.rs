@@ -85,7 +85,8 @@ pub fn reaction(text: &str, library: &Library, medium: Medium) -> Result<Equatio
             if closes(&own) { equation_of(&own) } else { Err(fault(BalanceError::NotUnique { dimension: 2 })) }
         }
         (Ok(balanced), given) => {
-            let plain: Vec<(Formula, f64)> = balanced.coefficients.iter().map(|(f, n)| (f.clone(), *n as f64)).collect();
+            let plain: Vec<(Formula, f64)> =
+                balanced.coefficients.iter().map(|(f, n)| (f.clone(), *n as f64)).collect();
             match given.filter(|g| g.iter().any(|n| *n != 1.0)) {
                 Some(given) => scaled_as_given(text, &plain, &given).and_then(|c| equation_of(&c)),
                 None => equation_of(&plain),
@@ -136,9 +137,8 @@ fn find<'l>(term: &Term, library: &'l Library) -> Result<&'l Species, NamedError
     if records.is_empty() {
         library.find(&text)?;
     }
-    states.iter().find_map(|state| records.iter().find(|s| s.state == *state).copied()).ok_or_else(|| NamedError::State {
-        formula: text,
-        known: records.iter().map(|s| s.label()).collect::<Vec<_>>().join(", "),
+    states.iter().find_map(|state| records.iter().find(|s| s.state == *state).copied()).ok_or_else(|| {
+        NamedError::State { formula: text, known: records.iter().map(|s| s.label()).collect::<Vec<_>>().join(", ") }
     })
 }
 
@@ -187,7 +187,11 @@ fn ligands<'l>(ox: &'l Species, red: &'l Species, library: &'l Library) -> Vec<&
             let plain = library
                 .holding(constituent)
                 .filter(|s| s.state == State::Aqueous)
-                .filter(|s| s.constituents.iter().all(|(c, _)| c == constituent || matches!(c.to_string().as_str(), "H+1" | "O-2")))
+                .filter(|s| {
+                    s.constituents
+                        .iter()
+                        .all(|(c, _)| c == constituent || matches!(c.to_string().as_str(), "H+1" | "O-2"))
+                })
                 .min_by_key(|s| (s.formula.atoms("H") as i64, s.formula.charge.abs()));
             list.extend(plain);
         }

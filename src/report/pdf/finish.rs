@@ -24,10 +24,7 @@ pub fn finish(mut file: PdfFile, document: &Document, pages: &[Page]) -> Result<
     let outline = add_outline(&mut file, pages);
     let catalog = file.catalog_mut()?;
     catalog.set("Lang", text_string("en"));
-    catalog.set(
-        "ViewerPreferences",
-        Dictionary::from_iter([("DisplayDocTitle", Object::Boolean(true))]),
-    );
+    catalog.set("ViewerPreferences", Dictionary::from_iter([("DisplayDocTitle", Object::Boolean(true))]));
     if let Some(outline) = outline {
         catalog.set("Outlines", outline);
         catalog.set("PageMode", "UseOutlines");
@@ -40,11 +37,7 @@ pub fn finish(mut file: PdfFile, document: &Document, pages: &[Page]) -> Result<
 
 fn properties(document: &Document) -> Dictionary {
     let date = text_string(&document.date.format("D:%Y%m%d000000Z").to_string());
-    let program = text_string(concat!(
-        env!("CARGO_PKG_NAME"),
-        " ",
-        env!("CARGO_PKG_VERSION")
-    ));
+    let program = text_string(concat!(env!("CARGO_PKG_NAME"), " ", env!("CARGO_PKG_VERSION")));
     let mut properties = Dictionary::from_iter([
         ("Title", text_string(&document.title)),
         ("Subject", text_string(&document.subject)),
@@ -66,11 +59,7 @@ fn add_outline(file: &mut PdfFile, pages: &[Page]) -> Option<ObjectId> {
     }
     let sheets: Vec<ObjectId> = file.get_pages().into_values().collect();
     let root = file.add_object(Dictionary::from_iter([("Type", Object::from("Outlines"))]));
-    let mut open = vec![Open {
-        level: 0,
-        id: root,
-        children: Vec::new(),
-    }];
+    let mut open = vec![Open { level: 0, id: root, children: Vec::new() }];
     for (page, sheet) in pages.iter().zip(sheets) {
         for (entry, y) in &page.entries {
             // Level 0 is the outline itself.
@@ -80,19 +69,12 @@ fn add_outline(file: &mut PdfFile, pages: &[Page]) -> Option<ObjectId> {
             }
             let top = Object::Real(PAGE_HEIGHT - y);
             let target = vec![sheet.into(), "XYZ".into(), Object::Null, top, Object::Null];
-            let item = Dictionary::from_iter([
-                ("Title", text_string(&entry.text)),
-                ("Dest", target.into()),
-            ]);
+            let item = Dictionary::from_iter([("Title", text_string(&entry.text)), ("Dest", target.into())]);
             let id = file.add_object(item);
             if let Some(parent) = open.last_mut() {
                 parent.children.push(id);
             }
-            open.push(Open {
-                level,
-                id,
-                children: Vec::new(),
-            });
+            open.push(Open { level, id, children: Vec::new() });
         }
     }
     while !open.is_empty() {
@@ -113,9 +95,7 @@ fn link(file: &mut PdfFile, parent: &Open) {
         return;
     };
     for (place, &child) in parent.children.iter().enumerate() {
-        let before = place
-            .checked_sub(1)
-            .and_then(|before| parent.children.get(before));
+        let before = place.checked_sub(1).and_then(|before| parent.children.get(before));
         let after = parent.children.get(place + 1);
         if let Ok(child) = file.get_object_mut(child).and_then(Object::as_dict_mut) {
             child.set("Parent", parent.id);

@@ -1,8 +1,8 @@
 //! Turns the blocks of a document into strips.
 
 use super::look::{
-    ACCENT, BODY, BODY_WIDTH, Colour, INK, LABEL, RULE, SMALL, SOFT_INK, SUBJECT, TABLE, TITLE,
-    Type, heading, tone_colour, tone_ground,
+    ACCENT, BODY, BODY_WIDTH, Colour, INK, LABEL, RULE, SMALL, SOFT_INK, SUBJECT, TABLE, TITLE, Type, heading,
+    tone_colour, tone_ground,
 };
 use super::strip::{Breaking, Cell, Mark, OutlineEntry, Strip, height, keep_together, row};
 use super::table::table_strips;
@@ -54,18 +54,12 @@ fn block_strips(block: &Block, document: &Document) -> Vec<Strip> {
         Block::Table(table) => table_strips(table),
         Block::Notice { tone, title, body } => notice(*tone, title, body),
         Block::SignOff(roles) => sign_off(roles),
-        Block::Space => vec![Strip {
-            space_before: 8.0,
-            ..Strip::blank(0.0)
-        }],
+        Block::Space => vec![Strip { space_before: 8.0, ..Strip::blank(0.0) }],
         // Between the blocks of a document; blocks kept together have no page break.
         Block::PageBreak => Vec::new(),
-        Block::KeepTogether(blocks) => keep_together(
-            blocks
-                .iter()
-                .flat_map(|block| block_strips(block, document))
-                .collect(),
-        ),
+        Block::KeepTogether(blocks) => {
+            keep_together(blocks.iter().flat_map(|block| block_strips(block, document)).collect())
+        }
     }
 }
 
@@ -81,75 +75,38 @@ fn spaced(mut strips: Vec<Strip>, above: f32, below: f32) -> Vec<Strip> {
 }
 
 fn text_cell(text: &Text, kind: Type, x: f32, width: f32, colour: Colour) -> Cell {
-    Cell {
-        x,
-        width,
-        align: Align::Left,
-        lines: wrap(text, kind.size, width),
-        colour,
-    }
+    Cell { x, width, align: Align::Left, lines: wrap(text, kind.size, width), colour }
 }
 
 fn paragraph(text: &Text, kind: Type, colour: Colour, width: f32) -> Vec<Strip> {
-    spaced(
-        row(
-            &[text_cell(text, kind, 0.0, width, colour)],
-            kind,
-            Breaking::AsParagraph,
-        ),
-        0.0,
-        PARAGRAPH_GAP,
-    )
+    spaced(row(&[text_cell(text, kind, 0.0, width, colour)], kind, Breaking::AsParagraph), 0.0, PARAGRAPH_GAP)
 }
 
 fn heading_strips(level: u8, text: &str) -> Vec<Strip> {
     let (kind, above, below, colour) = heading(level);
     let strong = Text::default().strong(text);
-    let mut strips = row(
-        &[text_cell(&strong, kind, 0.0, BODY_WIDTH, colour)],
-        kind,
-        Breaking::AsParagraph,
-    );
+    let mut strips = row(&[text_cell(&strong, kind, 0.0, BODY_WIDTH, colour)], kind, Breaking::AsParagraph);
     for strip in &mut strips {
         strip.keep_with_next = true;
     }
     if let Some(first) = strips.first_mut() {
-        first.entry = Some(OutlineEntry {
-            level,
-            text: text.to_owned(),
-        });
+        first.entry = Some(OutlineEntry { level, text: text.to_owned() });
     }
     spaced(strips, above, below)
 }
 
 fn bullets(items: &[Text]) -> Vec<Strip> {
     let width = BODY_WIDTH - BULLET_INDENT;
-    let mark = text_cell(
-        &Text::default().strong("•"),
-        BODY,
-        2.0,
-        BULLET_INDENT,
-        ACCENT,
-    );
+    let mark = text_cell(&Text::default().strong("•"), BODY, 2.0, BULLET_INDENT, ACCENT);
     let item = |text| {
-        let cells = [
-            mark.clone(),
-            text_cell(text, BODY, BULLET_INDENT, width, INK),
-        ];
+        let cells = [mark.clone(), text_cell(text, BODY, BULLET_INDENT, width, INK)];
         spaced(row(&cells, BODY, Breaking::AsParagraph), 0.0, BULLET_GAP)
     };
-    spaced(
-        items.iter().flat_map(item).collect(),
-        0.0,
-        PARAGRAPH_GAP - BULLET_GAP,
-    )
+    spaced(items.iter().flat_map(item).collect(), 0.0, PARAGRAPH_GAP - BULLET_GAP)
 }
 
 fn fact_strips(facts: &[(String, Text)]) -> Vec<Strip> {
-    let widest = facts
-        .iter()
-        .map(|(label, _)| natural_width(&label.as_str().into(), BODY.size))
-        .fold(0.0, f32::max);
+    let widest = facts.iter().map(|(label, _)| natural_width(&label.as_str().into(), BODY.size)).fold(0.0, f32::max);
     let left = widest.min(WIDEST_LABEL * BODY_WIDTH) + 0.1;
     let value_at = left + GUTTER;
     let fact = |(label, value): &(String, Text)| {
@@ -159,11 +116,7 @@ fn fact_strips(facts: &[(String, Text)]) -> Vec<Strip> {
         ];
         spaced(row(&cells, BODY, Breaking::AsParagraph), 0.0, FACT_GAP)
     };
-    spaced(
-        facts.iter().flat_map(fact).collect(),
-        0.0,
-        PARAGRAPH_GAP - FACT_GAP,
-    )
+    spaced(facts.iter().flat_map(fact).collect(), 0.0, PARAGRAPH_GAP - FACT_GAP)
 }
 
 fn notice(tone: Tone, title: &str, body: &[Text]) -> Vec<Strip> {
@@ -171,29 +124,17 @@ fn notice(tone: Tone, title: &str, body: &[Text]) -> Vec<Strip> {
     let colour = tone_colour(tone).unwrap_or(ACCENT);
     let mut strips = notice_title(tone, title, width, colour);
     for text in body {
-        strips.extend(spaced(
-            row(
-                &[text_cell(text, BODY, 0.0, width, INK)],
-                BODY,
-                Breaking::AsParagraph,
-            ),
-            0.0,
-            3.0,
-        ));
+        strips.extend(spaced(row(&[text_cell(text, BODY, 0.0, width, INK)], BODY, Breaking::AsParagraph), 0.0, 3.0));
     }
     let last = strips.len().saturating_sub(1);
     let boxed = |(place, strip): (usize, Strip)| {
         let above = if place == 0 { NOTICE_PADDING } else { 0.0 };
-        let below = if place == last {
-            NOTICE_PADDING - 2.0
-        } else {
-            0.0
-        };
-        strip
-            .indented(NOTICE_INDENT)
-            .padded(above, below)
-            .with_ground(0.0, NOTICE_BAR, colour)
-            .with_ground(0.0, BODY_WIDTH, tone_ground(tone))
+        let below = if place == last { NOTICE_PADDING - 2.0 } else { 0.0 };
+        strip.indented(NOTICE_INDENT).padded(above, below).with_ground(0.0, NOTICE_BAR, colour).with_ground(
+            0.0,
+            BODY_WIDTH,
+            tone_ground(tone),
+        )
     };
     let boxed: Vec<Strip> = strips.into_iter().enumerate().map(boxed).collect();
     let mut strips = spaced(keep_together(boxed), 4.0, 0.0);
@@ -212,13 +153,7 @@ fn notice_title(tone: Tone, title: &str, width: f32, colour: Colour) -> Vec<Stri
         cells.push(text_cell(&word, BODY, 0.0, word_width, colour));
         title_at = word_width + 8.0;
     }
-    cells.push(text_cell(
-        &Text::default().strong(title),
-        BODY,
-        title_at,
-        width - title_at,
-        INK,
-    ));
+    cells.push(text_cell(&Text::default().strong(title), BODY, title_at, width - title_at, INK));
     let mut strips = spaced(row(&cells, BODY, Breaking::AsParagraph), 0.0, 2.0);
     for strip in &mut strips {
         strip.keep_with_next = true;
@@ -229,34 +164,13 @@ fn notice_title(tone: Tone, title: &str, width: f32, colour: Colour) -> Vec<Stri
 /// A thick rule, title and subject, and below them label over value in two columns, a wide value in a row of its own.
 fn title_block(document: &Document, pairs: &[(String, Text)]) -> Vec<Strip> {
     let bar = Strip::blank(22.0).with_ground(0.0, BODY_WIDTH, ACCENT);
-    let bar = Strip {
-        marks: bar
-            .marks
-            .into_iter()
-            .map(|mark| thinned(mark, 3.0))
-            .collect(),
-        ..bar
-    };
+    let bar = Strip { marks: bar.marks.into_iter().map(|mark| thinned(mark, 3.0)).collect(), ..bar };
     let mut strips = vec![bar];
     let title = Text::default().strong(&document.title);
-    strips.extend(row(
-        &[text_cell(&title, TITLE, 0.0, BODY_WIDTH, ACCENT)],
-        TITLE,
-        Breaking::AsParagraph,
-    ));
+    strips.extend(row(&[text_cell(&title, TITLE, 0.0, BODY_WIDTH, ACCENT)], TITLE, Breaking::AsParagraph));
     if !document.subject.is_empty() {
-        let subject = text_cell(
-            &document.subject.as_str().into(),
-            SUBJECT,
-            0.0,
-            BODY_WIDTH,
-            SOFT_INK,
-        );
-        strips.extend(spaced(
-            row(&[subject], SUBJECT, Breaking::AsParagraph),
-            3.0,
-            0.0,
-        ));
+        let subject = text_cell(&document.subject.as_str().into(), SUBJECT, 0.0, BODY_WIDTH, SOFT_INK);
+        strips.extend(spaced(row(&[subject], SUBJECT, Breaking::AsParagraph), 3.0, 0.0));
     }
     let half = (BODY_WIDTH - GUTTER) / 2.0;
     strips.push(Strip::blank(14.0).with_rule_below(0.0, BODY_WIDTH, 0.5, RULE));
@@ -281,19 +195,7 @@ fn title_block(document: &Document, pairs: &[(String, Text)]) -> Vec<Strip> {
 
 fn thinned(mark: Mark, thickness: f32) -> Mark {
     match mark {
-        Mark::Fill {
-            x,
-            y,
-            width,
-            colour,
-            ..
-        } => Mark::Fill {
-            x,
-            y,
-            width,
-            height: thickness,
-            colour,
-        },
+        Mark::Fill { x, y, width, colour, .. } => Mark::Fill { x, y, width, height: thickness, colour },
         text => text,
     }
 }
@@ -302,26 +204,17 @@ fn title_row(pairs: &[&(String, Text)], width: f32) -> Vec<Strip> {
     let left = |place: usize| place as f32 * (width + GUTTER);
     let labels: Vec<Cell> = (0..)
         .zip(pairs)
-        .map(|(place, pair)| {
-            text_cell(&pair.0.as_str().into(), LABEL, left(place), width, SOFT_INK)
-        })
+        .map(|(place, pair)| text_cell(&pair.0.as_str().into(), LABEL, left(place), width, SOFT_INK))
         .collect();
-    let values: Vec<Cell> = (0..)
-        .zip(pairs)
-        .map(|(place, pair)| text_cell(&pair.1, BODY, left(place), width, INK))
-        .collect();
+    let values: Vec<Cell> =
+        (0..).zip(pairs).map(|(place, pair)| text_cell(&pair.1, BODY, left(place), width, INK)).collect();
     let mut strips = row(&labels, LABEL, Breaking::Whole);
     strips.extend(row(&values, BODY, Breaking::Whole));
     if let Some(first) = strips.first_mut() {
-        *first = Strip {
-            keep_with_next: true,
-            ..std::mem::take(first).padded(3.5, 0.0)
-        };
+        *first = Strip { keep_with_next: true, ..std::mem::take(first).padded(3.5, 0.0) };
     }
     if let Some(last) = strips.last_mut() {
-        *last = std::mem::take(last)
-            .padded(0.0, 4.0)
-            .with_rule_below(0.0, BODY_WIDTH, 0.5, RULE);
+        *last = std::mem::take(last).padded(0.0, 4.0).with_rule_below(0.0, BODY_WIDTH, 0.5, RULE);
     }
     strips
 }
@@ -329,24 +222,10 @@ fn title_row(pairs: &[&(String, Text)], width: f32) -> Vec<Strip> {
 /// One line for each role, with room to sign above rules for name, signature and date.
 fn sign_off(roles: &[String]) -> Vec<Strip> {
     let parts = SIGNING_PARTS.map(|part| part * BODY_WIDTH);
-    let lefts = [
-        0.0,
-        parts[0],
-        parts[0] + parts[1],
-        parts[0] + parts[1] + parts[2],
-    ];
+    let lefts = [0.0, parts[0], parts[0] + parts[1], parts[0] + parts[1] + parts[2]];
     let heads = ["Role", "Name", "Signature", "Date"];
-    let head: Vec<Cell> = (0..4)
-        .map(|place| {
-            text_cell(
-                &heads[place].into(),
-                LABEL,
-                lefts[place],
-                parts[place],
-                SOFT_INK,
-            )
-        })
-        .collect();
+    let head: Vec<Cell> =
+        (0..4).map(|place| text_cell(&heads[place].into(), LABEL, lefts[place], parts[place], SOFT_INK)).collect();
     let mut strips = row(&head, LABEL, Breaking::Whole);
     for role in roles {
         let strong = Text::default().strong(role);
@@ -360,12 +239,7 @@ fn sign_off(roles: &[String]) -> Vec<Strip> {
             *last = std::mem::take(last).padded(0.0, 3.0);
             for place in 1..4 {
                 let gap = if place == 3 { 0.0 } else { GUTTER };
-                *last = std::mem::take(last).with_rule_below(
-                    lefts[place],
-                    parts[place] - gap,
-                    0.6,
-                    SOFT_INK,
-                );
+                *last = std::mem::take(last).with_rule_below(lefts[place], parts[place] - gap, 0.6, SOFT_INK);
             }
         }
         strips.extend(line);
@@ -398,57 +272,32 @@ mod tests {
             Mark::Text { text, .. } => Some(text.clone()),
             Mark::Fill { .. } => None,
         };
-        strips
-            .iter()
-            .flat_map(|strip| strip.marks.iter().filter_map(text))
-            .collect()
+        strips.iter().flat_map(|strip| strip.marks.iter().filter_map(text)).collect()
     }
 
     #[test]
     fn a_notice_says_its_tone_in_a_word() {
-        let block = Block::Notice {
-            tone: Tone::Act,
-            title: "Chlorine".into(),
-            body: vec!["can form".into()],
-        };
-        assert_eq!(
-            texts(&strips(&document(vec![block]))),
-            ["ACT", "Chlorine", "can form"]
-        );
+        let block = Block::Notice { tone: Tone::Act, title: "Chlorine".into(), body: vec!["can form".into()] };
+        assert_eq!(texts(&strips(&document(vec![block]))), ["ACT", "Chlorine", "can form"]);
     }
 
     #[test]
     fn a_heading_is_kept_with_what_follows() {
-        let strips = strips(&document(vec![Block::Heading {
-            level: 1,
-            text: "Liquor".into(),
-        }]));
+        let strips = strips(&document(vec![Block::Heading { level: 1, text: "Liquor".into() }]));
         assert!(strips.iter().all(|strip| strip.keep_with_next));
-        assert_eq!(
-            strips[0].entry,
-            Some(OutlineEntry {
-                level: 1,
-                text: "Liquor".into()
-            })
-        );
+        assert_eq!(strips[0].entry, Some(OutlineEntry { level: 1, text: "Liquor".into() }));
     }
 
     #[test]
     fn wide_values_of_the_title_block_take_the_full_width() {
         let pairs = vec![
             ("Reference".to_owned(), Text::from("TR-014")),
-            (
-                "Scenario".to_owned(),
-                Text::from("a long description of the liquor and its purpose ".repeat(3)),
-            ),
+            ("Scenario".to_owned(), Text::from("a long description of the liquor and its purpose ".repeat(3))),
             ("Date".to_owned(), Text::from("30 November 2026")),
         ];
         let strips = strips(&document(vec![Block::TitleBlock(pairs)]));
         let texts = texts(&strips);
-        assert_eq!(
-            &texts[..4],
-            ["Strip of copper shred", "Screening", "Reference", "TR-014"]
-        );
+        assert_eq!(&texts[..4], ["Strip of copper shred", "Screening", "Reference", "TR-014"]);
         assert!(height(&strips) < 260.0);
     }
 

@@ -19,38 +19,14 @@ pub const FOOT_BASELINE: f32 = PAGE_HEIGHT - 42.0;
 pub const FURNITURE_GAP: f32 = 8.0;
 pub const FURNITURE_LEADING: f32 = 10.0;
 
-pub const BODY: Type = Type {
-    size: 9.75,
-    leading: 13.75,
-};
-pub const SMALL: Type = Type {
-    size: 8.25,
-    leading: 11.25,
-};
-pub const TABLE: Type = Type {
-    size: 8.5,
-    leading: 11.5,
-};
-pub const TABLE_HEAD: Type = Type {
-    size: 8.0,
-    leading: 10.5,
-};
-pub const LABEL: Type = Type {
-    size: 7.5,
-    leading: 10.0,
-};
-pub const FURNITURE: Type = Type {
-    size: 7.75,
-    leading: FURNITURE_LEADING,
-};
-pub const TITLE: Type = Type {
-    size: 21.0,
-    leading: 25.5,
-};
-pub const SUBJECT: Type = Type {
-    size: 11.5,
-    leading: 15.5,
-};
+pub const BODY: Type = Type { size: 9.75, leading: 13.75 };
+pub const SMALL: Type = Type { size: 8.25, leading: 11.25 };
+pub const TABLE: Type = Type { size: 8.5, leading: 11.5 };
+pub const TABLE_HEAD: Type = Type { size: 8.0, leading: 10.5 };
+pub const LABEL: Type = Type { size: 7.5, leading: 10.0 };
+pub const FURNITURE: Type = Type { size: 7.75, leading: FURNITURE_LEADING };
+pub const TITLE: Type = Type { size: 21.0, leading: 25.5 };
+pub const SUBJECT: Type = Type { size: 11.5, leading: 15.5 };
 
 pub const INK: Colour = Colour(0x1B, 0x24, 0x28);
 pub const SOFT_INK: Colour = Colour(0x56, 0x63, 0x68);
@@ -80,33 +56,9 @@ pub struct Colour(pub u8, pub u8, pub u8);
 /// How a heading of each level is set: type, air above, air below, colour.
 pub fn heading(level: u8) -> (Type, f32, f32, Colour) {
     match level {
-        0 | 1 => (
-            Type {
-                size: 14.5,
-                leading: 18.5,
-            },
-            22.0,
-            6.0,
-            ACCENT,
-        ),
-        2 => (
-            Type {
-                size: 11.5,
-                leading: 15.0,
-            },
-            15.0,
-            4.0,
-            ACCENT,
-        ),
-        _ => (
-            Type {
-                size: 9.75,
-                leading: 13.5,
-            },
-            10.0,
-            2.0,
-            INK,
-        ),
+        0 | 1 => (Type { size: 14.5, leading: 18.5 }, 22.0, 6.0, ACCENT),
+        2 => (Type { size: 11.5, leading: 15.0 }, 15.0, 4.0, ACCENT),
+        _ => (Type { size: 9.75, leading: 13.5 }, 10.0, 2.0, INK),
     }
 }
 

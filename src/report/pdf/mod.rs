@@ -12,8 +12,8 @@ mod table;
 mod text;
 
 use printpdf::{
-    Color, FontId, Mm, Op, PaintMode, PdfDocument, PdfFont, PdfFontHandle, PdfPage, PdfSaveOptions,
-    Point, Pt, Rect, Rgb, TextItem, to_lopdf_doc,
+    Color, FontId, Mm, Op, PaintMode, PdfDocument, PdfFont, PdfFontHandle, PdfPage, PdfSaveOptions, Point, Pt, Rect,
+    Rgb, TextItem, to_lopdf_doc,
 };
 
 use crate::report::document::{Document, Style};
@@ -76,38 +76,15 @@ fn draw(page: &Page) -> PdfPage {
 
 fn draw_mark(mark: &Mark) -> Vec<Op> {
     match mark {
-        Mark::Text {
-            x,
-            y,
-            size,
-            style,
-            colour,
-            text,
-        } => vec![
+        Mark::Text { x, y, size, style, colour, text } => vec![
             Op::StartTextSection,
             Op::SetFillColor { col: ink(*colour) },
-            Op::SetFont {
-                font: PdfFontHandle::External(font_id(*style)),
-                size: Pt(*size),
-            },
-            Op::SetTextCursor {
-                pos: Point {
-                    x: rounded(*x),
-                    y: rounded(PAGE_HEIGHT - y),
-                },
-            },
-            Op::ShowText {
-                items: vec![TextItem::Text(text.clone())],
-            },
+            Op::SetFont { font: PdfFontHandle::External(font_id(*style)), size: Pt(*size) },
+            Op::SetTextCursor { pos: Point { x: rounded(*x), y: rounded(PAGE_HEIGHT - y) } },
+            Op::ShowText { items: vec![TextItem::Text(text.clone())] },
             Op::EndTextSection,
         ],
-        Mark::Fill {
-            x,
-            y,
-            width,
-            height,
-            colour,
-        } => {
+        Mark::Fill { x, y, width, height, colour } => {
             let rectangle = Rect {
                 x: rounded(*x),
                 y: rounded(PAGE_HEIGHT - y - height),
@@ -116,10 +93,7 @@ fn draw_mark(mark: &Mark) -> Vec<Op> {
                 mode: Some(PaintMode::Fill),
                 winding_order: None,
             };
-            vec![
-                Op::SetFillColor { col: ink(*colour) },
-                Op::DrawRectangle { rectangle },
-            ]
+            vec![Op::SetFillColor { col: ink(*colour) }, Op::DrawRectangle { rectangle }]
         }
     }
 }
@@ -131,12 +105,7 @@ fn rounded(length: f32) -> Pt {
 
 fn ink(Colour(red, green, blue): Colour) -> Color {
     let part = |value: u8| (f32::from(value) / 255.0 * 1000.0).round() / 1000.0;
-    Color::Rgb(Rgb {
-        r: part(red),
-        g: part(green),
-        b: part(blue),
-        icc_profile: None,
-    })
+    Color::Rgb(Rgb { r: part(red), g: part(green), b: part(blue), icc_profile: None })
 }
 
 #[cfg(test)]

@@ -10,22 +10,9 @@ use crate::report::document::{Align, Style};
 #[derive(Debug, Clone, PartialEq)]
 pub enum Mark {
     /// y is the base line.
-    Text {
-        x: f32,
-        y: f32,
-        size: f32,
-        style: Style,
-        colour: Colour,
-        text: String,
-    },
+    Text { x: f32, y: f32, size: f32, style: Style, colour: Colour, text: String },
     /// A filled rectangle; rules and bars are thin ones. x, y is its upper left corner.
-    Fill {
-        x: f32,
-        y: f32,
-        width: f32,
-        height: f32,
-        colour: Colour,
-    },
+    Fill { x: f32, y: f32, width: f32, height: f32, colour: Colour },
 }
 
 /// A heading's line in the outline of the file.
@@ -82,59 +69,33 @@ impl Mark {
 impl Strip {
     /// Only air, with nothing drawn on it.
     pub fn blank(height: f32) -> Self {
-        Self {
-            height,
-            ..Self::default()
-        }
+        Self { height, ..Self::default() }
     }
 
     /// The strip with its marks moved to the right.
     pub fn indented(mut self, right: f32) -> Self {
-        self.marks = self
-            .marks
-            .into_iter()
-            .map(|mark| mark.moved(right, 0.0))
-            .collect();
+        self.marks = self.marks.into_iter().map(|mark| mark.moved(right, 0.0)).collect();
         self
     }
 
     /// The strip made taller above and below its marks.
     pub fn padded(mut self, above: f32, below: f32) -> Self {
         self.height += above + below;
-        self.marks = self
-            .marks
-            .into_iter()
-            .map(|mark| mark.moved(0.0, above))
-            .collect();
+        self.marks = self.marks.into_iter().map(|mark| mark.moved(0.0, above)).collect();
         self
     }
 
     /// The strip with a filled rectangle of its own height behind its marks.
     pub fn with_ground(mut self, x: f32, width: f32, colour: Colour) -> Self {
         let height = self.height;
-        self.marks.insert(
-            0,
-            Mark::Fill {
-                x,
-                y: 0.0,
-                width,
-                height,
-                colour,
-            },
-        );
+        self.marks.insert(0, Mark::Fill { x, y: 0.0, width, height, colour });
         self
     }
 
     /// The strip with a rule on its lower edge, inside its height.
     pub fn with_rule_below(mut self, x: f32, width: f32, thickness: f32, colour: Colour) -> Self {
         let y = self.height - thickness;
-        self.marks.push(Mark::Fill {
-            x,
-            y,
-            width,
-            height: thickness,
-            colour,
-        });
+        self.marks.push(Mark::Fill { x, y, width, height: thickness, colour });
         self
     }
 }
@@ -144,23 +105,13 @@ pub fn row(cells: &[Cell], kind: Type, breaking: Breaking) -> Vec<Strip> {
     let count = cells.iter().map(|cell| cell.lines.len()).max().unwrap_or(0);
     // Room is left for a table's head and the row's own padding.
     if breaking == Breaking::Whole && count as f32 * kind.leading <= 0.8 * BODY_HEIGHT {
-        let marks = cells
-            .iter()
-            .flat_map(|cell| (0..count).flat_map(|line| cell.marks(line, line, kind)))
-            .collect();
-        return vec![Strip {
-            height: count as f32 * kind.leading,
-            marks,
-            ..Strip::default()
-        }];
+        let marks = cells.iter().flat_map(|cell| (0..count).flat_map(|line| cell.marks(line, line, kind))).collect();
+        return vec![Strip { height: count as f32 * kind.leading, marks, ..Strip::default() }];
     }
     (0..count)
         .map(|line| Strip {
             height: kind.leading,
-            marks: cells
-                .iter()
-                .flat_map(|cell| cell.marks(line, 0, kind))
-                .collect(),
+            marks: cells.iter().flat_map(|cell| cell.marks(line, 0, kind)).collect(),
             keep_with_next: count > 1 && (line == 0 || line + 2 == count),
             ..Strip::default()
         })

@@ -2,9 +2,7 @@
 
 use std::rc::Rc;
 
-use super::look::{
-    ACCENT, BAND, BODY_WIDTH, INK, RULE, SMALL, SOFT_INK, TABLE, TABLE_HEAD, tone_colour,
-};
+use super::look::{ACCENT, BAND, BODY_WIDTH, INK, RULE, SMALL, SOFT_INK, TABLE, TABLE_HEAD, tone_colour};
 use super::strip::{Breaking, Cell, Mark, Strip, keep_together, row};
 use super::text::{natural_width, one_line, unbroken_width, wrap};
 use crate::report::document::{Column, Row, Style, Table, Text, Tone};
@@ -32,10 +30,7 @@ pub fn table_strips(table: &Table) -> Vec<Strip> {
     let total = widths.iter().sum();
     let head = Rc::new(head_strip(table, &widths, total));
     let mut strips = caption_strips(table);
-    strips.push(Strip {
-        keep_with_next: !table.rows.is_empty(),
-        ..(*head).clone()
-    });
+    strips.push(Strip { keep_with_next: !table.rows.is_empty(), ..(*head).clone() });
     let last = table.rows.len().saturating_sub(1);
     for (place, table_row) in table.rows.iter().enumerate() {
         let mut of_row = row_strips(table_row, table, &widths, total);
@@ -52,10 +47,7 @@ pub fn table_strips(table: &Table) -> Vec<Strip> {
         first.space_before = 8.0;
     }
     if let Some(end) = strips.pop() {
-        strips.push(
-            end.with_rule_below(0.0, total, 0.8, ACCENT)
-                .padded(0.0, 8.0),
-        );
+        strips.push(end.with_rule_below(0.0, total, 0.8, ACCENT).padded(0.0, 8.0));
     }
     strips
 }
@@ -71,17 +63,9 @@ pub fn column_widths(table: &Table, available: f32) -> Vec<f32> {
         .zip(&natural)
         .map(|(unbroken, natural)| unbroken.min(WIDEST_UNBROKEN).min(*natural))
         .collect();
-    let shares: Vec<f32> = table
-        .columns
-        .iter()
-        .map(|column| column.weight.max(0.0))
-        .collect();
+    let shares: Vec<f32> = table.columns.iter().map(|column| column.weight.max(0.0)).collect();
     let wanted = |place: usize| {
-        if shares[place] > 0.0 {
-            least[place]
-        } else {
-            natural[place]
-        }
+        if shares[place] > 0.0 { least[place] } else { natural[place] }
     };
     let mut widths: Vec<f32> = (0..shares.len()).map(wanted).collect();
     let over = widths.iter().sum::<f32>() - available;
@@ -101,13 +85,9 @@ fn widths_by(table: &Table, measure: fn(&Text, f32) -> f32) -> Vec<f32> {
     let of_column = |(place, column): (usize, &Column)| {
         let head = head_text(column);
         let unbroken = unbroken_width(&head, TABLE_HEAD.size);
-        let head = measure(&head, TABLE_HEAD.size)
-            .min(WIDEST_HEAD)
-            .max(unbroken);
+        let head = measure(&head, TABLE_HEAD.size).min(WIDEST_HEAD).max(unbroken);
         let cells = table.rows.iter().filter_map(|row| row.cells.get(place));
-        let widest = cells
-            .map(|cell| measure(cell, TABLE.size))
-            .fold(head, f32::max);
+        let widest = cells.map(|cell| measure(cell, TABLE.size)).fold(head, f32::max);
         (widest + 2.0 * SIDE).max(NARROWEST)
     };
     table.columns.iter().enumerate().map(of_column).collect()
@@ -115,40 +95,25 @@ fn widths_by(table: &Table, measure: fn(&Text, f32) -> f32) -> Vec<f32> {
 
 /// Takes `over` from the columns that are wider than their least width, then from all alike.
 fn shrink(widths: &mut [f32], least: &[f32], over: f32) {
-    let slack: f32 = widths
-        .iter()
-        .zip(least)
-        .map(|(width, least)| width - least)
-        .sum();
-    let part = if slack > 0.0 {
-        (over / slack).min(1.0)
-    } else {
-        0.0
-    };
+    let slack: f32 = widths.iter().zip(least).map(|(width, least)| width - least).sum();
+    let part = if slack > 0.0 { (over / slack).min(1.0) } else { 0.0 };
     for (width, least) in widths.iter_mut().zip(least) {
         *width -= part * (*width - least);
     }
     let still_over = over - part * slack;
     if still_over > 0.0 {
         let total: f32 = widths.iter().sum();
-        widths
-            .iter_mut()
-            .for_each(|width| *width *= 1.0 - still_over / total);
+        widths.iter_mut().for_each(|width| *width *= 1.0 - still_over / total);
     }
 }
 
 /// Gives the columns with a share what the fitted columns leave, none less than it needs.
 fn shared_out(needed: &[f32], shares: &[f32], available: f32) -> Vec<f32> {
     let mut widths = needed.to_vec();
-    let mut sharing: Vec<usize> = (0..shares.len())
-        .filter(|&place| shares[place] > 0.0)
-        .collect();
+    let mut sharing: Vec<usize> = (0..shares.len()).filter(|&place| shares[place] > 0.0).collect();
     // Each round settles the columns that need more than their share, so there are at most as many rounds as columns.
     loop {
-        let settled: f32 = (0..widths.len())
-            .filter(|place| !sharing.contains(place))
-            .map(|place| needed[place])
-            .sum();
+        let settled: f32 = (0..widths.len()).filter(|place| !sharing.contains(place)).map(|place| needed[place]).sum();
         let weight: f32 = sharing.iter().map(|&place| shares[place]).sum();
         let share = |place: usize| (available - settled) * shares[place] / weight;
         let before = sharing.len();
@@ -181,8 +146,7 @@ fn with_words_for_tones(table: &Table) -> Table {
 
 /// Whether the text has the word, in whichever case, not as a part of another.
 fn says(text: &str, word: &str) -> bool {
-    text.split(|letter: char| !letter.is_alphanumeric())
-        .any(|part| part.to_lowercase() == word)
+    text.split(|letter: char| !letter.is_alphanumeric()).any(|part| part.to_lowercase() == word)
 }
 
 fn caption_strips(table: &Table) -> Vec<Strip> {
@@ -190,19 +154,10 @@ fn caption_strips(table: &Table) -> Vec<Strip> {
         return Vec::new();
     };
     let lines = wrap(&Text::default().strong(caption), SMALL.size, BODY_WIDTH);
-    let cell = Cell {
-        x: 0.0,
-        width: BODY_WIDTH,
-        align: Default::default(),
-        lines,
-        colour: SOFT_INK,
-    };
+    let cell = Cell { x: 0.0, width: BODY_WIDTH, align: Default::default(), lines, colour: SOFT_INK };
     let mut strips = keep_together(row(&[cell], SMALL, Breaking::AsParagraph));
     if let Some(end) = strips.pop() {
-        strips.push(Strip {
-            keep_with_next: true,
-            ..end.padded(0.0, 4.0)
-        });
+        strips.push(Strip { keep_with_next: true, ..end.padded(0.0, 4.0) });
     }
     strips
 }
@@ -220,44 +175,23 @@ fn head_strip(table: &Table, widths: &[f32], total: f32) -> Strip {
             lines.truncate(LINES_IN_HEAD - 1);
             lines.push(one_line("…", Style::Strong, TABLE_HEAD.size, width));
         }
-        Cell {
-            x: 0.0,
-            width,
-            align: column.align,
-            lines,
-            colour: ACCENT,
-        }
+        Cell { x: 0.0, width, align: column.align, lines, colour: ACCENT }
     });
     let tallest = cells.iter().map(|cell| cell.lines.len()).max().unwrap_or(0);
     for cell in &mut cells {
         let missing = tallest - cell.lines.len();
         cell.lines.splice(0..0, vec![Default::default(); missing]);
     }
-    let strip = row(&cells, TABLE_HEAD, Breaking::Whole)
-        .pop()
-        .unwrap_or_default();
-    strip
-        .padded(3.5, 4.0)
-        .with_ground(0.0, total, BAND)
-        .with_rule_below(0.0, total, 0.8, ACCENT)
+    let strip = row(&cells, TABLE_HEAD, Breaking::Whole).pop().unwrap_or_default();
+    strip.padded(3.5, 4.0).with_ground(0.0, total, BAND).with_rule_below(0.0, total, 0.8, ACCENT)
 }
 
 fn row_strips(table_row: &Row, table: &Table, widths: &[f32], total: f32) -> Vec<Strip> {
-    let colour = if table_row.tone == Tone::Quiet {
-        SOFT_INK
-    } else {
-        INK
-    };
+    let colour = if table_row.tone == Tone::Quiet { SOFT_INK } else { INK };
     let empty = Text::default();
     let cells = cells(widths, |place, width| {
         let text = table_row.cells.get(place).unwrap_or(&empty);
-        Cell {
-            x: 0.0,
-            width,
-            align: table.columns[place].align,
-            lines: wrap(text, TABLE.size, width),
-            colour,
-        }
+        Cell { x: 0.0, width, align: table.columns[place].align, lines: wrap(text, TABLE.size, width), colour }
     });
     let mut strips = row(&cells, TABLE, Breaking::Whole);
     let last = strips.len().saturating_sub(1);
@@ -269,13 +203,7 @@ fn row_strips(table_row: &Row, table: &Table, widths: &[f32], total: f32) -> Vec
             *strip = std::mem::take(strip).with_rule_below(0.0, total, HAIRLINE, RULE);
         }
         if let (Some(colour), Some(_)) = (tone_colour(table_row.tone), table_row.tone.word()) {
-            strip.marks.push(Mark::Fill {
-                x: 0.0,
-                y: 0.0,
-                width: BAR,
-                height: strip.height - HAIRLINE,
-                colour,
-            });
+            strip.marks.push(Mark::Fill { x: 0.0, y: 0.0, width: BAR, height: strip.height - HAIRLINE, colour });
         }
     }
     strips
@@ -286,10 +214,7 @@ fn cells(widths: &[f32], make: impl Fn(usize, f32) -> Cell) -> Vec<Cell> {
     let mut left = 0.0;
     let mut cells = Vec::new();
     for (place, &width) in widths.iter().enumerate() {
-        cells.push(Cell {
-            x: left + SIDE,
-            ..make(place, width - 2.0 * SIDE)
-        });
+        cells.push(Cell { x: left + SIDE, ..make(place, width - 2.0 * SIDE) });
         left += width;
     }
     cells
@@ -301,11 +226,7 @@ mod tests {
 
     fn table(columns: Vec<Column>, rows: Vec<Vec<&str>>) -> Table {
         let row = |cells: Vec<&str>| Row::plain(cells.into_iter().map(Text::from).collect());
-        Table {
-            caption: None,
-            columns,
-            rows: rows.into_iter().map(row).collect(),
-        }
+        Table { caption: None, columns, rows: rows.into_iter().map(row).collect() }
     }
 
     #[test]
@@ -317,10 +238,7 @@ mod tests {
                 Column::share("Remark", 1.0),
                 Column::share("Source", 2.0),
             ],
-            vec![
-                vec!["Fe³⁺/Fe²⁺", "0.771", "fast", "NBS"],
-                vec!["ClO⁻/Cl⁻", "0.890", "slow", "NBS"],
-            ],
+            vec![vec!["Fe³⁺/Fe²⁺", "0.771", "fast", "NBS"], vec!["ClO⁻/Cl⁻", "0.890", "slow", "NBS"]],
         );
         let widths = column_widths(&table, 400.0);
         let widest = natural_width(&Text::from("Fe³⁺/Fe²⁺"), TABLE.size);
@@ -334,9 +252,7 @@ mod tests {
         let long = "a statement of some length that will have to be wrapped ".repeat(8);
         let unbroken = "x".repeat(300);
         for count in [1, 2, 5, 14] {
-            let columns = (0..count)
-                .map(|place| Column::fit(format!("head {place}")))
-                .collect();
+            let columns = (0..count).map(|place| Column::fit(format!("head {place}"))).collect();
             let rows = vec![vec![long.as_str(); count], vec![unbroken.as_str(); count]];
             let widths = column_widths(&table(columns, rows), BODY_WIDTH);
             assert!(widths.iter().sum::<f32>() <= BODY_WIDTH + 0.1, "{widths:?}");
@@ -346,10 +262,7 @@ mod tests {
 
     #[test]
     fn a_tone_that_no_cell_names_is_put_into_words() {
-        let mut table = table(
-            vec![Column::fit("Subject")],
-            vec![vec!["reactor shell"], vec!["Review: agitator"]],
-        );
+        let mut table = table(vec![Column::fit("Subject")], vec![vec!["reactor shell"], vec!["Review: agitator"]]);
         table.rows[0].tone = Tone::Act;
         table.rows[1].tone = Tone::Review;
         let said = with_words_for_tones(&table);

@@ -23,10 +23,7 @@ fn document(blocks: Vec<Block>) -> Document {
 }
 
 fn heading(level: u8, text: &str) -> Block {
-    Block::Heading {
-        level,
-        text: text.into(),
-    }
+    Block::Heading { level, text: text.into() }
 }
 
 fn long_table(rows: usize) -> Block {
@@ -36,62 +33,32 @@ fn long_table(rows: usize) -> Block {
             format!("{:.3}", number as f64 / 7.0).into(),
             "NBS tables".into(),
         ],
-        tone: if number.is_multiple_of(9) {
-            Tone::Review
-        } else {
-            Tone::Plain
-        },
+        tone: if number.is_multiple_of(9) { Tone::Review } else { Tone::Plain },
     };
     Block::Table(Table {
         caption: Some("Species of the liquor".into()),
-        columns: vec![
-            Column::fit("Name of species"),
-            Column::number("Molality, mol/kg"),
-            Column::share("Source", 1.0),
-        ],
+        columns: vec![Column::fit("Name of species"), Column::number("Molality, mol/kg"), Column::share("Source", 1.0)],
         rows: (1..=rows).map(row).collect(),
     })
 }
 
 /// Every kind of block, with text that is hard to set.
 fn everything() -> Document {
-    let wordy = "The dissolution is driven by the couple and ends where the potential has fallen. "
-        .repeat(12);
+    let wordy = "The dissolution is driven by the couple and ends where the potential has fallen. ".repeat(12);
     document(vec![
-        Block::TitleBlock(vec![
-            ("Reference".into(), "TR-014".into()),
-            ("Liquor".into(), wordy.as_str().into()),
-        ]),
+        Block::TitleBlock(vec![("Reference".into(), "TR-014".into()), ("Liquor".into(), wordy.as_str().into())]),
         heading(1, "Summary"),
-        Block::Notice {
-            tone: Tone::Act,
-            title: "Chlorine can form".into(),
-            body: vec![wordy.as_str().into()],
-        },
-        Block::Paragraph(
-            Text::from("Copper is ")
-                .strong("driven")
-                .plain(" by Fe³⁺ SO₄²⁻ → ΔG° with ")
-                .emphasis("K"),
-        ),
+        Block::Notice { tone: Tone::Act, title: "Chlorine can form".into(), body: vec![wordy.as_str().into()] },
+        Block::Paragraph(Text::from("Copper is ").strong("driven").plain(" by Fe³⁺ SO₄²⁻ → ΔG° with ").emphasis("K")),
         Block::Paragraph("x".repeat(300).into()),
         Block::Bullets(vec![wordy.as_str().into(), "鉄 has no glyph".into()]),
-        Block::Facts(vec![
-            ("Temperature".into(), "45 °C".into()),
-            ("Long ".repeat(40), wordy.as_str().into()),
-        ]),
+        Block::Facts(vec![("Temperature".into(), "45 °C".into()), ("Long ".repeat(40), wordy.as_str().into())]),
         Block::PageBreak,
         heading(1, "Liquor"),
         heading(2, "Species"),
         long_table(200),
-        Block::KeepTogether(vec![
-            heading(2, "Review"),
-            Block::Small("Signed on paper.".into()),
-        ]),
-        Block::SignOff(vec![
-            "Prepared".into(),
-            "Checked by a process-safety engineer".into(),
-        ]),
+        Block::KeepTogether(vec![heading(2, "Review"), Block::Small("Signed on paper.".into())]),
+        Block::SignOff(vec!["Prepared".into(), "Checked by a process-safety engineer".into()]),
         Block::Space,
         heading(1, "Sources"),
     ])
@@ -104,10 +71,7 @@ fn read(document: &Document) -> PdfFile {
 /// The text of each page; pieces are read in drawing order.
 fn texts(document: &Document) -> Vec<String> {
     let file = read(document);
-    file.get_pages()
-        .into_keys()
-        .map(|number| file.extract_text(&[number]).expect("text"))
-        .collect()
+    file.get_pages().into_keys().map(|number| file.extract_text(&[number]).expect("text")).collect()
 }
 
 fn laid_out(document: &Document) -> Vec<Page> {
@@ -130,13 +94,7 @@ fn every_page_bears_head_and_foot() {
         assert!(text.contains("Screening report – chloride strip"), "{text}");
         assert!(text.contains("TR-014  ·  revision A"), "{text}");
         assert!(text.contains("it does not promise."), "{text}");
-        assert!(
-            text.contains(&format!(
-                "30 November 2026  ·  page {} of {count}",
-                place + 1
-            )),
-            "{text}"
-        );
+        assert!(text.contains(&format!("30 November 2026  ·  page {} of {count}", place + 1)), "{text}");
     }
 }
 
@@ -145,55 +103,31 @@ fn a_long_table_is_headed_on_each_of_its_pages_and_loses_no_row() {
     let texts = texts(&document(vec![heading(1, "Liquor"), long_table(200)]));
     assert!(texts.len() > 4);
     for text in &texts {
-        assert!(
-            text.contains("Name of species") && text.contains("Molality, mol/kg"),
-            "{text}"
-        );
+        assert!(text.contains("Name of species") && text.contains("Molality, mol/kg"), "{text}");
     }
     let all = texts.concat();
     for number in 1..=200 {
-        assert_eq!(
-            all.matches(&format!("species {number}\n")).count(),
-            1,
-            "row {number}"
-        );
+        assert_eq!(all.matches(&format!("species {number}\n")).count(), 1, "row {number}");
     }
 }
 
 #[test]
 fn a_row_stays_whole_on_one_page() {
     let cell = "A cell of several lines. ".repeat(20);
-    let rows = (0..30)
-        .map(|number| Row::plain(vec![format!("[{number} {cell} {number}]").into()]))
-        .collect();
-    let table = Table {
-        caption: None,
-        columns: vec![Column::share("Statement", 1.0)],
-        rows,
-    };
+    let rows = (0..30).map(|number| Row::plain(vec![format!("[{number} {cell} {number}]").into()])).collect();
+    let table = Table { caption: None, columns: vec![Column::share("Statement", 1.0)], rows };
     let texts = texts(&document(vec![Block::Table(table)]));
     for number in 0..30 {
         let (start, end) = (format!("[{number} "), format!(" {number}]"));
-        let on_page = |needle: &str| {
-            texts
-                .iter()
-                .position(|text| text.replace('\n', " ").contains(needle))
-        };
+        let on_page = |needle: &str| texts.iter().position(|text| text.replace('\n', " ").contains(needle));
         assert_eq!(on_page(&start), on_page(&end), "row {number}");
     }
 }
 
 #[test]
 fn a_row_taller_than_a_page_is_spread_over_pages() {
-    let rows = vec![Row::plain(vec![
-        "start".into(),
-        format!("{}end", "long story ".repeat(2500)).into(),
-    ])];
-    let table = Table {
-        caption: None,
-        columns: vec![Column::fit("Key"), Column::share("Story", 1.0)],
-        rows,
-    };
+    let rows = vec![Row::plain(vec!["start".into(), format!("{}end", "long story ".repeat(2500)).into()])];
+    let table = Table { caption: None, columns: vec![Column::fit("Key"), Column::share("Story", 1.0)], rows };
     let texts = texts(&document(vec![heading(1, "Tall"), Block::Table(table)]));
     assert!(texts.len() > 2);
     assert!(texts[0].contains("start") && texts[0].contains("long story"));
@@ -207,26 +141,10 @@ fn nothing_stands_outside_the_margins() {
     for page in laid_out(&everything()) {
         for mark in &page.marks {
             let (start, end, top, bottom) = match mark {
-                Mark::Text {
-                    x,
-                    y,
-                    size,
-                    style,
-                    text,
-                    ..
-                } => (
-                    *x,
-                    x + Face::of(*style).width(text.trim_end(), *size),
-                    y - size,
-                    *y,
-                ),
-                Mark::Fill {
-                    x,
-                    y,
-                    width,
-                    height,
-                    ..
-                } => (*x, x + width, *y, y + height),
+                Mark::Text { x, y, size, style, text, .. } => {
+                    (*x, x + Face::of(*style).width(text.trim_end(), *size), y - size, *y)
+                }
+                Mark::Fill { x, y, width, height, .. } => (*x, x + width, *y, y + height),
             };
             assert!(start >= left && end <= right, "{mark:?}");
             assert!(top > 30.0 && bottom < PAGE_HEIGHT - 25.0, "{mark:?}");
@@ -255,11 +173,7 @@ fn a_heading_is_never_left_alone_at_the_foot_of_a_page() {
         blocks.push(Block::Paragraph("below the heading".into()));
         let texts = texts(&document(blocks));
         for text in texts {
-            assert_eq!(
-                text.contains("Heading at some place"),
-                text.contains("below the heading"),
-                "{lines} lines"
-            );
+            assert_eq!(text.contains("Heading at some place"), text.contains("below the heading"), "{lines} lines");
         }
     }
 }
@@ -275,50 +189,23 @@ fn the_same_document_gives_the_same_bytes() {
 fn the_outline_follows_the_headings() {
     let file = read(&everything());
     let contents = file.get_toc().expect("outline").toc;
-    let titles: Vec<(usize, &str)> = contents
-        .iter()
-        .map(|entry| (entry.level, entry.title.as_str()))
-        .collect();
-    assert_eq!(
-        titles,
-        [
-            (1, "Summary"),
-            (1, "Liquor"),
-            (2, "Species"),
-            (2, "Review"),
-            (1, "Sources")
-        ]
-    );
+    let titles: Vec<(usize, &str)> = contents.iter().map(|entry| (entry.level, entry.title.as_str())).collect();
+    assert_eq!(titles, [(1, "Summary"), (1, "Liquor"), (2, "Species"), (2, "Review"), (1, "Sources")]);
     let texts = texts(&everything());
     for entry in &contents {
-        assert!(
-            texts[entry.page - 1].contains(&entry.title),
-            "{}",
-            entry.title
-        );
+        assert!(texts[entry.page - 1].contains(&entry.title), "{}", entry.title);
     }
 }
 
 #[test]
 fn the_properties_are_the_documents() {
     let file = read(&everything());
-    let info = file
-        .trailer
-        .get(b"Info")
-        .and_then(|info| file.dereference(info))
-        .expect("properties")
-        .1;
+    let info = file.trailer.get(b"Info").and_then(|info| file.dereference(info)).expect("properties").1;
     let property = |key: &[u8]| {
-        let value = info
-            .as_dict()
-            .and_then(|info| info.get(key))
-            .expect("property");
+        let value = info.as_dict().and_then(|info| info.get(key)).expect("property");
         lopdf::decode_text_string(value).expect("text")
     };
-    assert_eq!(
-        property(b"Title"),
-        "Oxidising chloride strip of copper shred"
-    );
+    assert_eq!(property(b"Title"), "Oxidising chloride strip of copper shred");
     assert_eq!(property(b"Author"), "Process group – Ångström");
     assert_eq!(property(b"CreationDate"), "D:20261130000000Z");
 }

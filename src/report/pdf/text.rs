@@ -10,9 +10,9 @@ const NO_BREAK_SPACE: char = '\u{A0}';
 
 /// Units, as far as the first stroke or exponent, that stay on the line of their number.
 const UNITS: &[&str] = &[
-    "%", "‰", "°C", "K", "V", "mV", "mol", "mmol", "J", "kJ", "MJ", "g", "mg", "µg", "kg", "t",
-    "m", "mm", "µm", "cm", "L", "mL", "h", "min", "s", "d", "bar", "mbar", "Pa", "kPa", "MPa",
-    "atm", "A", "mA", "µA", "W", "kW", "ppm", "ppb",
+    "%", "‰", "°C", "K", "V", "mV", "mol", "mmol", "J", "kJ", "MJ", "g", "mg", "µg", "kg", "t", "m", "mm", "µm", "cm",
+    "L", "mL", "h", "min", "s", "d", "bar", "mbar", "Pa", "kPa", "MPa", "atm", "A", "mA", "µA", "W", "kW", "ppm",
+    "ppb",
 ];
 
 /// A stretch of a line in one style, as printed.
@@ -72,29 +72,18 @@ pub fn wrap(text: &Text, size: f32, width: f32) -> Vec<Line> {
 
 /// Width that the text takes when it breaks only at line feeds, pt.
 pub fn natural_width(text: &Text, size: f32) -> f32 {
-    wrap(text, size, f32::INFINITY)
-        .iter()
-        .map(|line| line.width)
-        .fold(0.0, f32::max)
+    wrap(text, size, f32::INFINITY).iter().map(|line| line.width).fold(0.0, f32::max)
 }
 
 /// Width of the widest stretch that should not be broken, pt.
 pub fn unbroken_width(text: &Text, size: f32) -> f32 {
-    words_of_lines(text)
-        .iter()
-        .flatten()
-        .map(|word| word.width(size))
-        .fold(0.0, f32::max)
+    words_of_lines(text).iter().flatten().map(|word| word.width(size)).fold(0.0, f32::max)
 }
 
 /// The text on one line, cut with an ellipsis where it is wider than the width, pt.
 pub fn one_line(text: &str, style: Style, size: f32, width: f32) -> Line {
-    let letters = |text: &str| -> Vec<_> {
-        printable(&text.replace('\n', " "))
-            .chars()
-            .map(|letter| (letter, style))
-            .collect()
-    };
+    let letters =
+        |text: &str| -> Vec<_> { printable(&text.replace('\n', " ")).chars().map(|letter| (letter, style)).collect() };
     let mut kept = letters(text);
     if letters_width(&kept, size) > width {
         let room = width - Face::of(style).width("…", size);
@@ -115,9 +104,7 @@ impl Word {
 impl Line {
     /// Width of a space after what stands on the line.
     fn gap(&self, size: f32) -> f32 {
-        self.spans
-            .last()
-            .map_or(0.0, |span| Face::of(span.style).width(" ", size))
+        self.spans.last().map_or(0.0, |span| Face::of(span.style).width(" ", size))
     }
 
     /// Appends letters; the space before them is real, so that copied text has it too.
@@ -130,12 +117,7 @@ impl Line {
         }
         for stretch in letters.chunk_by(|one, next| one.1 == next.1) {
             let style = stretch[0].1;
-            let text = printable(
-                &stretch
-                    .iter()
-                    .map(|&(letter, _)| letter)
-                    .collect::<String>(),
-            );
+            let text = printable(&stretch.iter().map(|&(letter, _)| letter).collect::<String>());
             let x = self.width;
             self.width += Face::of(style).width(&text, size);
             match self.spans.last_mut() {
@@ -148,15 +130,9 @@ impl Line {
 
 /// The words of each line that the text's own line feeds make.
 fn words_of_lines(text: &Text) -> Vec<Vec<Word>> {
-    let letters: Vec<(char, Style)> = text
-        .0
-        .iter()
-        .flat_map(|run| run.text.chars().map(|letter| (letter, run.style)))
-        .collect();
-    letters
-        .split(|&(letter, _)| letter == '\n')
-        .map(words)
-        .collect()
+    let letters: Vec<(char, Style)> =
+        text.0.iter().flat_map(|run| run.text.chars().map(|letter| (letter, run.style))).collect();
+    letters.split(|&(letter, _)| letter == '\n').map(words).collect()
 }
 
 fn words(letters: &[(char, Style)]) -> Vec<Word> {
@@ -165,17 +141,11 @@ fn words(letters: &[(char, Style)]) -> Vec<Word> {
         let mut start = 0;
         for place in 1..stretch.len() {
             if ends_part_of_compound(&stretch, place) {
-                words.push(Word {
-                    letters: stretch[start..place].to_vec(),
-                    joined: start > 0,
-                });
+                words.push(Word { letters: stretch[start..place].to_vec(), joined: start > 0 });
                 start = place;
             }
         }
-        words.push(Word {
-            letters: stretch[start..].to_vec(),
-            joined: start > 0,
-        });
+        words.push(Word { letters: stretch[start..].to_vec(), joined: start > 0 });
     }
     words
 }
@@ -185,10 +155,7 @@ fn words(letters: &[(char, Style)]) -> Vec<Word> {
 fn bound_stretches(letters: &[(char, Style)]) -> Vec<Vec<(char, Style)>> {
     let mut bound: Vec<Vec<(char, Style)>> = Vec::new();
     let mut before = String::new();
-    for stretch in letters
-        .split(|&(letter, _)| is_breaking_space(letter))
-        .filter(|stretch| !stretch.is_empty())
-    {
+    for stretch in letters.split(|&(letter, _)| is_breaking_space(letter)).filter(|stretch| !stretch.is_empty()) {
         let token: String = stretch.iter().map(|&(letter, _)| letter).collect();
         match bound.last_mut() {
             Some(last) if belongs_to_number_before(&before, &token) => {
@@ -203,18 +170,12 @@ fn bound_stretches(letters: &[(char, Style)]) -> Vec<Vec<(char, Style)>> {
 }
 
 fn belongs_to_number_before(before: &str, token: &str) -> bool {
-    let after_number =
-        before.ends_with(|letter: char| letter.is_ascii_digit() || is_superscript_figure(letter));
+    let after_number = before.ends_with(|letter: char| letter.is_ascii_digit() || is_superscript_figure(letter));
     let number = token.starts_with(|letter: char| letter.is_ascii_digit());
-    let unit = token
-        .split(['/', ',', '.', ';', ':', ')', '⁻', '²', '³'])
-        .next()
-        .unwrap_or_default();
+    let unit = token.split(['/', ',', '.', ';', ':', ')', '⁻', '²', '³']).next().unwrap_or_default();
     let coefficient = before.bytes().all(|byte| byte.is_ascii_digit());
     let formula = token.contains(|letter| matches!(letter, '\u{2070}'..='\u{209C}' | '²' | '³'));
-    (after_number && (token == "±" || UNITS.contains(&unit)))
-        || (before == "±" && number)
-        || (coefficient && formula)
+    (after_number && (token == "±" || UNITS.contains(&unit))) || (before == "±" && number) || (coefficient && formula)
 }
 
 fn is_superscript_figure(letter: char) -> bool {
@@ -229,19 +190,14 @@ fn is_breaking_space(letter: char) -> bool {
 fn ends_part_of_compound(letters: &[(char, Style)], place: usize) -> bool {
     let letter = |back: usize| place.checked_sub(back).map(|index| letters[index].0);
     let hyphen = matches!(letter(1), Some('-' | '\u{2010}'));
-    let between_letters = letters[place].0.is_alphabetic()
-        && [2, 3]
-            .iter()
-            .all(|&back| letter(back).is_some_and(char::is_alphabetic));
+    let between_letters =
+        letters[place].0.is_alphabetic() && [2, 3].iter().all(|&back| letter(back).is_some_and(char::is_alphabetic));
     (hyphen && between_letters) || letter(1) == Some('\u{200B}')
 }
 
 fn letters_width(letters: &[(char, Style)], size: f32) -> f32 {
     let mut buffer = [0; 4];
-    letters
-        .iter()
-        .map(|&(letter, style)| Face::of(style).width(letter.encode_utf8(&mut buffer), size))
-        .sum()
+    letters.iter().map(|&(letter, style)| Face::of(style).width(letter.encode_utf8(&mut buffer), size)).sum()
 }
 
 /// How many of the letters fit in the width.
@@ -260,11 +216,7 @@ fn fitting(letters: &[(char, Style)], size: f32, width: f32) -> usize {
 /// Where a stretch that is too wide is broken: at least one letter, at most what fits.
 fn break_point(letters: &[(char, Style)], size: f32, width: f32) -> usize {
     let fitting = fitting(letters, size, width).clamp(1, letters.len());
-    let may_start_line = |place: usize| {
-        letters
-            .get(place)
-            .is_none_or(|&(letter, _)| !belongs_to_letter_before(letter))
-    };
+    let may_start_line = |place: usize| letters.get(place).is_none_or(|&(letter, _)| !belongs_to_letter_before(letter));
     let after_joint = |place: usize| may_start_line(place) && is_joint(letters[place - 1].0);
     // A joint in the first third would leave the line too empty.
     (fitting / 3 + 1..=fitting)
@@ -308,10 +260,7 @@ mod tests {
     use super::*;
 
     fn plain(lines: &[Line]) -> Vec<String> {
-        lines
-            .iter()
-            .map(|line| line.spans.iter().map(|span| span.text.as_str()).collect())
-            .collect()
+        lines.iter().map(|line| line.spans.iter().map(|span| span.text.as_str()).collect()).collect()
     }
 
     #[test]
@@ -326,10 +275,7 @@ mod tests {
 
     #[test]
     fn styles_change_within_a_line_without_a_gap() {
-        let text = Text::from("E of ")
-            .strong("Fe³⁺")
-            .plain("/")
-            .emphasis("Fe²⁺");
+        let text = Text::from("E of ").strong("Fe³⁺").plain("/").emphasis("Fe²⁺");
         let lines = wrap(&text, 10.0, 500.0);
         assert_eq!(plain(&lines), ["E of Fe³⁺/Fe²⁺"]);
         let line = &lines[0];
@@ -342,63 +288,34 @@ mod tests {
     #[test]
     fn compound_words_break_after_the_hyphen_and_charges_do_not() {
         let narrow = Face::of(Style::Regular).width("temperature-", 10.0) + 1.0;
-        assert_eq!(
-            plain(&wrap(&Text::from("temperature-dependent"), 10.0, narrow)),
-            ["temperature-", "dependent"]
-        );
+        assert_eq!(plain(&wrap(&Text::from("temperature-dependent"), 10.0, narrow)), ["temperature-", "dependent"]);
         let narrow = Face::of(Style::Regular).width("of Cl", 10.0) + 1.0;
-        assert_eq!(
-            plain(&wrap(&Text::from("of Cl- and"), 10.0, narrow)),
-            ["of", "Cl-", "and"]
-        );
+        assert_eq!(plain(&wrap(&Text::from("of Cl- and"), 10.0, narrow)), ["of", "Cl-", "and"]);
     }
 
     #[test]
     fn a_number_stays_with_its_unit_and_uncertainty() {
-        let text = Text::from(
-            "a driving force of +480 ± 9 mV against the couple, ΔG = −92.6 kJ/mol in all",
-        );
+        let text = Text::from("a driving force of +480 ± 9 mV against the couple, ΔG = −92.6 kJ/mol in all");
         for width in (60..300).step_by(7) {
             let lines = plain(&wrap(&text, 10.0, width as f32));
-            assert!(
-                lines.iter().any(|line| line.contains("+480 ± 9 mV")),
-                "{lines:?}"
-            );
-            assert!(
-                lines.iter().any(|line| line.contains("−92.6 kJ/mol")),
-                "{lines:?}"
-            );
+            assert!(lines.iter().any(|line| line.contains("+480 ± 9 mV")), "{lines:?}");
+            assert!(lines.iter().any(|line| line.contains("−92.6 kJ/mol")), "{lines:?}");
         }
         let reaction = Text::from("2 Fe³⁺ + Cu → 2 Fe²⁺ + Cu²⁺");
         for width in 40..150 {
             let lines = plain(&wrap(&reaction, 10.0, width as f32));
-            assert!(
-                lines.iter().all(|line| !line.trim_end().ends_with('2')),
-                "{lines:?}"
-            );
+            assert!(lines.iter().all(|line| !line.trim_end().ends_with('2')), "{lines:?}");
         }
         // Too narrow for both: broken between them.
         let width = Face::of(Style::Regular).width("92.6 ", 10.0) + 1.0;
-        assert_eq!(
-            plain(&wrap(&Text::from("92.6 kJ"), 10.0, width)),
-            ["92.6 ", "kJ"]
-        );
+        assert_eq!(plain(&wrap(&Text::from("92.6 kJ"), 10.0, width)), ["92.6 ", "kJ"]);
     }
 
     #[test]
     fn a_long_formula_breaks_at_its_joints() {
-        let lines = wrap(
-            &Text::from("2Fe³⁺+CuFeS₂+4Cl⁻+3H₂O+2SO₄²⁻+UO₂²⁺"),
-            10.0,
-            70.0,
-        );
+        let lines = wrap(&Text::from("2Fe³⁺+CuFeS₂+4Cl⁻+3H₂O+2SO₄²⁻+UO₂²⁺"), 10.0, 70.0);
         assert!(lines.len() > 2);
-        assert!(
-            plain(&lines)[..lines.len() - 1]
-                .iter()
-                .all(|line| line.ends_with('+')),
-            "{lines:?}"
-        );
+        assert!(plain(&lines)[..lines.len() - 1].iter().all(|line| line.ends_with('+')), "{lines:?}");
     }
 
     #[test]
@@ -413,10 +330,7 @@ mod tests {
 
     #[test]
     fn line_feeds_end_lines_and_empty_text_is_one_empty_line() {
-        assert_eq!(
-            plain(&wrap(&Text::from("one\ntwo three"), 10.0, 500.0)),
-            ["one", "two three"]
-        );
+        assert_eq!(plain(&wrap(&Text::from("one\ntwo three"), 10.0, 500.0)), ["one", "two three"]);
         assert_eq!(plain(&wrap(&Text::default(), 10.0, 500.0)), [""]);
     }
 

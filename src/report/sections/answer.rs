@@ -9,7 +9,8 @@ use crate::screens::{Attention, Finding, Question, Verdict};
 /// The findings that ask for action or review, then whether each duty is met.
 pub fn answer(subject: &Subject) -> Vec<Block> {
     let mut blocks = vec![heading("What needs attention")];
-    let urgent: Vec<&Finding> = leading(subject.findings).into_iter().filter(|f| f.attention < Attention::Note).collect();
+    let urgent: Vec<&Finding> =
+        leading(subject.findings).into_iter().filter(|f| f.attention < Attention::Note).collect();
     if urgent.is_empty() {
         blocks.push(Block::Paragraph(
             "No finding asks for action or review. That is not a clearance: read the limits of the method and the cautions.".into(),
@@ -18,7 +19,11 @@ pub fn answer(subject: &Subject) -> Vec<Block> {
         let rows = urgent
             .iter()
             .map(|f| Row {
-                cells: vec![Text::default().strong(f.attention.name()), f.question.name().into(), f.statement.clone().into()],
+                cells: vec![
+                    Text::default().strong(f.attention.name()),
+                    f.question.name().into(),
+                    f.statement.clone().into(),
+                ],
                 tone: tone(f.attention),
             })
             .collect();
@@ -37,7 +42,8 @@ pub fn answer(subject: &Subject) -> Vec<Block> {
 pub fn leading(findings: &[Finding]) -> Vec<&Finding> {
     let mut list: Vec<&Finding> = Vec::new();
     for finding in findings {
-        let same = |f: &&mut &Finding| f.question == finding.question && f.subject == finding.subject && finding.question != Question::Contact;
+        let apart = matches!(finding.question, Question::Contact | Question::Gas);
+        let same = |f: &&mut &Finding| f.question == finding.question && f.subject == finding.subject && !apart;
         match list.iter_mut().find(same) {
             Some(known) if stronger(finding, known) => *known = finding,
             Some(_) => {}
@@ -66,13 +72,18 @@ fn duties(subject: &Subject) -> Block {
             let own: Vec<&Finding> = subject
                 .findings
                 .iter()
-                .filter(|f| f.subject == solid.name && matches!(f.question, Question::Dissolution | Question::Leaching | Question::Cementation))
+                .filter(|f| {
+                    f.subject == solid.name
+                        && matches!(f.question, Question::Dissolution | Question::Leaching | Question::Cementation)
+                })
                 .collect();
             let governing = governing(&own);
             let duty = if solid.duty == Duty::Dissolve { "dissolve" } else { "resist" };
-            let (verdict, attention) = governing.map_or(("not assessed", Attention::Review), |f| (f.verdict.name(), f.attention));
+            let (verdict, attention) =
+                governing.map_or(("not assessed", Attention::Review), |f| (f.verdict.name(), f.attention));
             Row {
                 cells: vec![
+                    Text::default().strong(attention.name()),
                     solid.name.clone().into(),
                     solid.material_name.clone().into(),
                     duty.into(),
@@ -86,6 +97,7 @@ fn duties(subject: &Subject) -> Block {
     Block::Table(Table {
         caption: None,
         columns: vec![
+            Column::fit("Attention"),
             Column::share("Solid", 0.22),
             Column::share("Material", 0.17),
             Column::fit("Duty"),
@@ -101,10 +113,7 @@ pub fn governing<'f>(own: &[&'f Finding]) -> Option<&'f Finding> {
     let held_back = |f: &Finding| f.reasons.iter().any(|r| r.starts_with("Held back"));
     let measured = own.iter().find(|f| f.against.as_deref() == Some("measured potential"));
     let driven = |f: &&&&Finding| f.verdict == Verdict::Driven;
-    let strongest = own
-        .iter()
-        .filter(|f| !held_back(f))
-        .max_by(|a, b| force(a).total_cmp(&force(b)));
+    let strongest = own.iter().filter(|f| !held_back(f)).max_by(|a, b| force(a).total_cmp(&force(b)));
     let acid_alone = own.iter().filter(|f| f.driving_force.is_none()).find(|f| f.verdict == Verdict::Driven);
     measured.or(strongest.as_ref().filter(driven).copied()).or(acid_alone).or(strongest).copied()
 }

@@ -12,11 +12,16 @@ use crate::screens::Verdict;
 
 /// Each caution that a finding calls for, once; the general one always.
 pub fn cautions(subject: &Subject) -> Vec<Block> {
-    let called: BTreeSet<&str> = subject.findings.iter().flat_map(|f| f.cautions.iter().map(String::as_str)).chain(["general"]).collect();
+    let called: BTreeSet<&str> =
+        subject.findings.iter().flat_map(|f| f.cautions.iter().map(String::as_str)).chain(["general"]).collect();
     let mut blocks = vec![heading("Cautions")];
     for (key, caution) in &subject.house.caution {
         if called.contains(key.as_str()) {
-            blocks.push(Block::Notice { tone: Tone::Plain, title: caution.title.clone(), body: vec![caution.text.as_str().into()] });
+            blocks.push(Block::Notice {
+                tone: Tone::Plain,
+                title: caution.title.clone(),
+                body: vec![caution.text.as_str().into()],
+            });
         }
     }
     blocks
@@ -79,7 +84,7 @@ fn row(species: &Species, liquor: &crate::equilibrium::Liquor) -> Row {
     Row::plain(vec![
         species.pretty().into(),
         number(species.gibbs.value * 1e-3, 2).into(),
-        format!("{:.1}", species.gibbs.standard_uncertainty * 1e-3).into(),
+        format!("{:.2}", species.gibbs.standard_uncertainty * 1e-3).into(),
         number(liquor.gibbs.of(species.id).value * 1e-3, 2).into(),
         short_model(&species.temperature).into(),
         species.source.clone().into(),
@@ -87,8 +92,19 @@ fn row(species: &Species, liquor: &crate::equilibrium::Liquor) -> Row {
     ])
 }
 
+/// The model in two or three words; the method section spells them out.
 fn short_model(model: &TemperatureModel) -> &'static str {
-    model.name()
+    match model {
+        TemperatureModel::Water => "IAPWS-IF97",
+        TemperatureModel::HydrogenIon | TemperatureModel::CorrespondencePrinciple(_) => "Criss and Cobble",
+        TemperatureModel::HeatCapacity { .. } => "heat capacity",
+        TemperatureModel::GasSolubility { .. } => "Henry curve, IAPWS",
+        TemperatureModel::MeasuredCurve { .. } => "measured log K(T)",
+        TemperatureModel::ReactionEnthalpy { .. } => "van 't Hoff",
+        TemperatureModel::ConstantLogK { .. } => "log K held",
+        TemperatureModel::EntropyOnly => "entropy held",
+        TemperatureModel::ConstantGibbs => "G° held",
+    }
 }
 
 fn sources(subject: &Subject, used: &[&Species]) -> Block {

@@ -23,21 +23,44 @@ pub fn conditions(subject: &Subject) -> Vec<Block> {
     let spread = |u: f64, decimals: usize| if u > 0.0 { format!(" (u = {u:.decimals$})") } else { String::new() };
     let t = liquor.temperature.value;
     let mut facts: Vec<(String, Text)> = vec![
-        ("Temperature".into(), format!("{} °C{}", number(t.value - 273.15, 1), spread(t.standard_uncertainty, 1)).into()),
-        ("pH".into(), format!("{}{}", number(liquor.ph.value.value, 2), spread(liquor.ph.value.standard_uncertainty, 2)).into()),
+        (
+            "Temperature".into(),
+            format!("{} °C{}", number(t.value - 273.15, 1), spread(t.standard_uncertainty, 1)).into(),
+        ),
+        (
+            "pH".into(),
+            format!("{}{}", number(liquor.ph.value.value, 2), spread(liquor.ph.value.standard_uncertainty, 2)).into(),
+        ),
     ];
     for (name, amount) in &liquor.dissolved {
-        facts.push((format!("Dissolved {}", super::results::pretty_label(&name.value)), concentration(&amount.value).into()));
+        facts.push((
+            format!("Dissolved {}", super::results::pretty_label(&name.value)),
+            concentration(&amount.value).into(),
+        ));
     }
     for oxidant in &scenario.oxidants {
         let label = format!("Oxidant {}", oxidant.name.value);
-        facts.push((label, format!("{} {}", super::results::pretty_label(&oxidant.species.value), concentration(&oxidant.amount.value)).into()));
+        facts.push((
+            label,
+            format!(
+                "{} {}",
+                super::results::pretty_label(&oxidant.species.value),
+                concentration(&oxidant.amount.value)
+            )
+            .into(),
+        ));
     }
     for (name, bar) in &liquor.gas {
-        facts.push((format!("Gas {}", super::results::pretty_label(&name.value)), format!("{:.3} bar", bar.value.value).into()));
+        facts.push((
+            format!("Gas {}", super::results::pretty_label(&name.value)),
+            format!("{:.3} bar", bar.value.value).into(),
+        ));
     }
     if let Some((volts, electrode)) = &case.measured {
-        facts.push(("Measured potential".into(), format!("{:.3} V against SHE (electrode {electrode})", volts.value).into()));
+        facts.push((
+            "Measured potential".into(),
+            format!("{:.3} V against SHE (electrode {electrode})", volts.value).into(),
+        ));
     }
     if let Some(volume) = case.volume {
         facts.push(("Volume".into(), format!("{volume} m³").into()));
@@ -61,7 +84,11 @@ fn concentration(c: &Concentration) -> String {
     };
     let spread = if u > 0.0 { format!(" (u = {:.3})", u * factor) } else { String::new() };
     let value = value * factor;
-    if value >= 0.001 { format!("{} {unit}{spread}", significant(value)) } else { format!("{value:.2e} {unit}{spread}") }
+    if value >= 0.001 {
+        format!("{} {unit}{spread}", significant(value))
+    } else {
+        format!("{value:.2e} {unit}{spread}")
+    }
 }
 
 /// Four significant figures without an exponent for everyday numbers.
@@ -104,7 +131,12 @@ pub fn liquor(subject: &Subject) -> Vec<Block> {
         Block::Facts(facts),
         Block::Table(Table {
             caption: Some("Dissolved species, most abundant first".into()),
-            columns: vec![Column::fit("Species"), Column::share("Name", 1.0), Column::number("mol/kg"), Column::number("Activity")],
+            columns: vec![
+                Column::fit("Species"),
+                Column::share("Name", 1.0),
+                Column::number("mol/kg"),
+                Column::number("Activity"),
+            ],
             rows,
         }),
         couple_table(subject),
@@ -156,13 +188,26 @@ fn saturation(subject: &Subject) -> Option<Block> {
         .into_iter()
         .take(15)
         .map(|(species, index)| {
-            let words = if index > 0.3 { "can precipitate" } else if index > -0.3 { "at saturation" } else { "close below" };
-            Row::plain(vec![species.pretty().into(), species.name.clone().into(), number(index, 1).into(), words.into()])
+            let words = if index > 0.3 {
+                "can precipitate"
+            } else if index > -0.3 {
+                "at saturation"
+            } else {
+                "close below"
+            };
+            Row::plain(vec![
+                species.pretty().into(),
+                species.name.clone().into(),
+                number(index, 1).into(),
+                words.into(),
+            ])
         })
         .collect();
     (!rows.is_empty()).then(|| {
         Block::Table(Table {
-            caption: Some("Solids near or above saturation (log of ion product over solubility product, per formula)".into()),
+            caption: Some(
+                "Solids near or above saturation (log of ion product over solubility product, per formula)".into(),
+            ),
             columns: vec![Column::fit("Solid"), Column::share("Name", 1.0), Column::number("Index"), Column::fit("")],
             rows,
         })

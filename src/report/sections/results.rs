@@ -4,7 +4,7 @@ use crate::report::Subject;
 use crate::report::compose::{heading, tone};
 use crate::report::document::{Block, Column, Row, Table, Text};
 use crate::screens::states::ladders as all_ladders;
-use crate::screens::{Finding, Question, Verdict};
+use crate::screens::{Attention, Finding, Question, Verdict};
 
 /// Every pairing, solid by solid.
 pub fn solids(subject: &Subject) -> Vec<Block> {
@@ -13,7 +13,9 @@ pub fn solids(subject: &Subject) -> Vec<Block> {
         let rows: Vec<Row> = subject
             .findings
             .iter()
-            .filter(|f| f.subject == solid.name && !matches!(f.question, Question::Gas | Question::State | Question::Contact))
+            .filter(|f| {
+                f.subject == solid.name && !matches!(f.question, Question::Gas | Question::State | Question::Contact)
+            })
             .map(pairing_row)
             .collect();
         let caption = format!("{} ({}), duty: {}", solid.name, solid.material_name, duty(solid));
@@ -94,7 +96,11 @@ fn statements(findings: &[&Finding]) -> Block {
     let rows = findings
         .iter()
         .map(|f| Row {
-            cells: vec![Text::default().strong(f.attention.name()), f.verdict.name().into(), f.statement.clone().into()],
+            cells: vec![
+                Text::default().strong(f.attention.name()),
+                f.verdict.name().into(),
+                f.statement.clone().into(),
+            ],
             tone: tone(f.attention),
         })
         .collect();
@@ -139,7 +145,9 @@ pub fn gases(subject: &Subject) -> Vec<Block> {
         })
         .collect();
     blocks.push(Block::Table(Table {
-        caption: Some("Equilibrium pressure against public limits; driven = above the lowest limit beyond doubt".into()),
+        caption: Some(
+            "Equilibrium pressure against public limits; driven = above the lowest limit beyond doubt".into(),
+        ),
         columns: vec![
             Column::fit("Gas"),
             Column::share("Route", 1.0),
@@ -220,7 +228,10 @@ pub fn ladders(subject: &Subject) -> Vec<Block> {
 pub fn reactions(subject: &Subject) -> Vec<Block> {
     let mut seen: Vec<&str> = Vec::new();
     let mut rows = Vec::new();
-    for finding in subject.findings.iter().filter(|f| f.question != Question::State) {
+    let wanted = |f: &&&Finding| {
+        f.question != Question::State && f.attention < Attention::Note || f.question == Question::Leaching
+    };
+    for finding in super::answer::leading(subject.findings).iter().filter(wanted) {
         let Some(reaction) = finding.reaction_pretty.as_deref() else { continue };
         if seen.contains(&reaction) || finding.verdict == Verdict::Opposed {
             continue;
@@ -229,10 +240,10 @@ pub fn reactions(subject: &Subject) -> Vec<Block> {
         rows.push(Row::plain(vec![
             reaction.into(),
             finding.log_k.map_or_else(|| "—".into(), |k| number(k, 1).into()),
-            finding.subject.clone().into(),
+            pretty_label(&finding.subject).into(),
         ]));
     }
-    let mut blocks = vec![heading("Reactions")];
+    let mut blocks = vec![heading("Reactions behind the findings")];
     if rows.is_empty() {
         blocks.push(Block::Paragraph("No reaction is driven or near balance.".into()));
         return blocks;
@@ -250,11 +261,16 @@ pub fn reasons(subject: &Subject) -> Vec<Block> {
     let mut blocks = vec![heading("Why: reasons and assumptions")];
     let before = blocks.len();
     for finding in super::answer::leading(subject.findings) {
-        if finding.reasons.is_empty() {
+        if finding.reasons.is_empty() || finding.attention == Attention::Note {
             continue;
         }
         let head = match &finding.against {
-            Some(against) => format!("{}: {} against {}", finding.question.name(), pretty_label(&finding.subject), pretty_label(against)),
+            Some(against) => format!(
+                "{}: {} against {}",
+                finding.question.name(),
+                pretty_label(&finding.subject),
+                pretty_label(against)
+            ),
             None => format!("{}: {}", finding.question.name(), pretty_label(&finding.subject)),
         };
         blocks.push(Block::KeepTogether(vec![
@@ -263,7 +279,8 @@ pub fn reasons(subject: &Subject) -> Vec<Block> {
         ]));
     }
     if blocks.len() == before {
-        blocks.push(Block::Paragraph("No finding needs further reasons.".into()));
+        blocks.push(Block::Paragraph("No finding asks for action or review.".into()));
     }
+    blocks.push(Block::Small("The reasons behind the notes are in the JSON report.".into()));
     blocks
 }

@@ -52,24 +52,16 @@ mod release {
 /// # Errors
 /// [`RangeError::Outside`] beyond that range.
 pub fn dielectric_constant(t: Kelvin, density: f64) -> Result<f64, RangeError> {
-    check_range(
-        "temperature for the dielectric constant in K",
-        t.0,
-        238.0,
-        873.15,
-    )?;
+    check_range("temperature for the dielectric constant in K", t.0, 238.0, 873.15)?;
     check_range("density of water in kg/m³", density, 0.0, 1250.0)?;
     let delta = density / CRITICAL_DENSITY;
     let tau = CRITICAL_TEMPERATURE / t.0;
-    let series: f64 = TERMS
-        .iter()
-        .map(|&(n, i, j)| n * delta.powi(i) * tau.powf(j))
-        .sum();
+    let series: f64 = TERMS.iter().map(|&(n, i, j)| n * delta.powi(i) * tau.powf(j)).sum();
     let factor = 1.0 + series + TWELFTH * delta * (t.0 / 228.0 - 1.0).powf(-1.2);
 
     let molecules = release::AVOGADRO * density / release::MOLAR_MASS;
-    let a = molecules * release::DIPOLE_MOMENT.powi(2) * factor
-        / (release::VACUUM_PERMITTIVITY * release::BOLTZMANN * t.0);
+    let a =
+        molecules * release::DIPOLE_MOMENT.powi(2) * factor / (release::VACUUM_PERMITTIVITY * release::BOLTZMANN * t.0);
     let b = molecules * release::POLARIZABILITY / (3.0 * release::VACUUM_PERMITTIVITY);
     let root = (9.0 + 2.0 * a + 18.0 * b + a * a + 10.0 * a * b + 9.0 * b * b).sqrt();
     Ok((1.0 + a + 5.0 * b + root) / (4.0 - 4.0 * b))
@@ -159,12 +151,8 @@ mod tests {
     }
 
     /// °C, A, B: Freeze and Cherry, Groundwater (1979), appendix IV (older dielectric constants, per volume).
-    const FREEZE_AND_CHERRY: [[f64; 3]; 4] = [
-        [0.0, 0.4883, 0.3241],
-        [10.0, 0.4960, 0.3258],
-        [25.0, 0.5085, 0.3281],
-        [30.0, 0.5130, 0.3290],
-    ];
+    const FREEZE_AND_CHERRY: [[f64; 3]; 4] =
+        [[0.0, 0.4883, 0.3241], [10.0, 0.4960, 0.3258], [25.0, 0.5085, 0.3281], [30.0, 0.5130, 0.3290]];
 
     #[test]
     fn debye_hueckel_coefficients_agree_with_older_tables() {
@@ -180,10 +168,7 @@ mod tests {
     fn debye_hueckel_slope_agrees_with_bradley_and_pitzer() {
         for (celsius, osmotic) in [(25.0, 0.3915), (100.0, 0.4603)] {
             let found = debye_hueckel_a(Kelvin::from_celsius(celsius)).unwrap() * LN_10 / 3.0;
-            assert!(
-                (found / osmotic - 1.0).abs() < 2e-3,
-                "{celsius} °C: {found}"
-            );
+            assert!((found / osmotic - 1.0).abs() < 2e-3, "{celsius} °C: {found}");
         }
     }
 

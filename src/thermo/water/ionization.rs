@@ -18,12 +18,7 @@ const COORDINATION: f64 = 6.0;
 /// # Errors
 /// [`RangeError::Outside`] beyond that range.
 pub fn log10_ion_product(t: Kelvin, density: f64) -> Result<f64, RangeError> {
-    check_range(
-        "temperature for the ion product of water in K",
-        t.0,
-        273.15,
-        1073.15,
-    )?;
+    check_range("temperature for the ion product of water in K", t.0, 273.15, 1073.15)?;
     check_range("density of water in kg/m³", density, 0.0, 1250.0)?;
     let rho = density / 1000.0;
     let t = t.0;

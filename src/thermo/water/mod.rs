@@ -25,12 +25,7 @@ const STANDARD_ENTROPY: f64 = 69.95;
 pub enum RangeError {
     /// The quantity, named with its unit, lies outside the range in which the formulation is stated.
     #[error("{quantity} {value} is outside {from} … {to}, where its formulation holds")]
-    Outside {
-        quantity: String,
-        value: f64,
-        from: f64,
-        to: f64,
-    },
+    Outside { quantity: String, value: f64, from: f64, to: f64 },
     /// No solubility curve is carried for the gas.
     #[error("there is no curve of Henry's constant for {gas}")]
     NoSolubilityCurve { gas: String },
@@ -44,12 +39,7 @@ pub fn check_range(quantity: &str, value: f64, from: f64, to: f64) -> Result<(),
     if (from..=to).contains(&value) {
         return Ok(());
     }
-    Err(RangeError::Outside {
-        quantity: quantity.to_owned(),
-        value,
-        from,
-        to,
-    })
+    Err(RangeError::Outside { quantity: quantity.to_owned(), value, from, to })
 }
 
 /// Pressure on liquid water in every property here, bar: the larger of 1 bar and the vapour pressure.
@@ -115,10 +105,7 @@ mod tests {
     fn density_agrees_with_tables() {
         for &(celsius, expected, tolerance) in DENSITIES {
             let found = density(Kelvin::from_celsius(celsius)).unwrap();
-            assert!(
-                (found - expected).abs() < tolerance,
-                "{celsius} °C: {found}"
-            );
+            assert!((found - expected).abs() < tolerance, "{celsius} °C: {found}");
         }
     }
 
@@ -136,18 +123,13 @@ mod tests {
         for celsius in [5.0, 25.0, 60.0, 90.0, 150.0, 250.0, 300.0] {
             let t = Kelvin::from_celsius(celsius);
             let (low, high) = (Kelvin(t.0 - step), Kelvin(t.0 + step));
-            let slope = (liquid_water_gibbs_change(high).unwrap()
-                - liquid_water_gibbs_change(low).unwrap())
-                / (2.0 * step);
+            let slope =
+                (liquid_water_gibbs_change(high).unwrap() - liquid_water_gibbs_change(low).unwrap()) / (2.0 * step);
             let here = liquid_on_line(t).unwrap();
             let entropy = STANDARD_ENTROPY + MOLAR_MASS * (here.entropy - standard.entropy);
-            let pressure_slope =
-                (pressure(high).unwrap() - pressure(low).unwrap()) * 1e5 / (2.0 * step);
+            let pressure_slope = (pressure(high).unwrap() - pressure(low).unwrap()) * 1e5 / (2.0 * step);
             let expected = -entropy + MOLAR_MASS * here.volume * pressure_slope;
-            assert!(
-                (slope - expected).abs() < 1e-3,
-                "{celsius} °C: {slope} against {expected}"
-            );
+            assert!((slope - expected).abs() < 1e-3, "{celsius} °C: {slope} against {expected}");
         }
     }
 
@@ -159,10 +141,7 @@ mod tests {
             let t = Kelvin::from_celsius(celsius);
             let simple = -69.95 * (t.0 - t0) + 75.3 * ((t.0 - t0) - t.0 * (t.0 / t0).ln());
             let found = liquid_water_gibbs_change(t).unwrap();
-            assert!(
-                (found - simple).abs() < 3.0,
-                "{celsius} °C: {found} against {simple}"
-            );
+            assert!((found - simple).abs() < 3.0, "{celsius} °C: {found} against {simple}");
             let heat = liquid_water_enthalpy_change(t).unwrap();
             assert!((heat / (75.3 * (t.0 - t0)) - 1.0).abs() < 3e-3);
         }
@@ -175,10 +154,8 @@ mod tests {
         for celsius in [20.0, 70.0] {
             let t = Kelvin::from_celsius(celsius);
             let over_t = |t: f64| liquid_water_gibbs_change(Kelvin(t)).unwrap() / t;
-            let slope = (over_t(t.0 + step) - over_t(t.0 - step))
-                / (1.0 / (t.0 + step) - 1.0 / (t.0 - step));
-            let enthalpy =
-                liquid_water_enthalpy_change(t).unwrap() + T_STANDARD.0 * STANDARD_ENTROPY;
+            let slope = (over_t(t.0 + step) - over_t(t.0 - step)) / (1.0 / (t.0 + step) - 1.0 / (t.0 - step));
+            let enthalpy = liquid_water_enthalpy_change(t).unwrap() + T_STANDARD.0 * STANDARD_ENTROPY;
             assert!((slope - enthalpy).abs() < 1.0, "{slope} against {enthalpy}");
         }
     }
@@ -186,10 +163,7 @@ mod tests {
     #[test]
     fn outside_the_range_is_an_error_with_a_name() {
         let cold = liquid_water_gibbs_change(Kelvin(270.0));
-        assert!(matches!(
-            cold,
-            Err(RangeError::Outside { value: 270.0, .. })
-        ));
+        assert!(matches!(cold, Err(RangeError::Outside { value: 270.0, .. })));
         assert!(density(Kelvin(640.0)).is_err());
         assert!(density(Kelvin(f64::NAN)).is_err());
         let text = density(Kelvin(640.0)).unwrap_err().to_string();

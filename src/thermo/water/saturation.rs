@@ -43,26 +43,16 @@ mod tests {
     /// IAPWS R7-97(2012), table 35: saturation pressure in MPa.
     #[test]
     fn agrees_with_the_table_of_the_release() {
-        for (kelvin, megapascals) in [
-            (300.0, 0.353_658_941e-2),
-            (500.0, 0.263_889_776e1),
-            (600.0, 0.123_443_146e2),
-        ] {
+        for (kelvin, megapascals) in [(300.0, 0.353_658_941e-2), (500.0, 0.263_889_776e1), (600.0, 0.123_443_146e2)] {
             let found: f64 = saturation_pressure(Kelvin(kelvin)).unwrap() / 10.0;
-            assert!(
-                (found / megapascals - 1.0).abs() < 1e-8,
-                "{kelvin} K: {found}"
-            );
+            assert!((found / megapascals - 1.0).abs() < 1e-8, "{kelvin} K: {found}");
         }
     }
 
     #[test]
     fn water_boils_near_100_celsius_at_one_atmosphere() {
         let bar = saturation_pressure(Kelvin(373.124)).unwrap();
-        assert!(
-            (bar - crate::quantity::ATMOSPHERE_BAR).abs() < 1e-4,
-            "{bar}"
-        );
+        assert!((bar - crate::quantity::ATMOSPHERE_BAR).abs() < 1e-4, "{bar}");
     }
 
     #[test]
