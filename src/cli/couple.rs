@@ -45,7 +45,7 @@ pub fn run(args: &CoupleArgs, library: &Library) -> Result<ExitCode, Failure> {
     let (oxidised, reduced, equation) = named::couple(&args.couple, library, medium).map_err(Failure::input)?;
     let table = GibbsTable::at(library, t).map_err(Failure::input)?;
     let electrons = -equation.electrons;
-    let standard = equation.delta_g(&table).scaled(-1.0 / (electrons * FARADAY));
+    let standard = equation.delta_g(&table, library).scaled(-1.0 / (electrons * FARADAY));
     let conditions = Conditions::read(args, library, t)?;
     let actual = conditions.potential(oxidised, reduced, library)?;
     let text = equation.ascii(library);

@@ -1,6 +1,7 @@
 //! Every couple's Nernst potential in a liquor whose oxidation states are kept apart.
 
 use crate::chemistry::Element;
+use crate::library::SpeciesId;
 use crate::library::tables::{InertClass, InertRecord};
 use crate::quantity::{Estimate, FARADAY};
 
@@ -30,28 +31,34 @@ pub fn couple(liquor: &Liquor, oxidised: StateForm, reduced: StateForm) -> Coupl
     let electrons = oxidised.oxidation() - reduced.oxidation();
     let thermal = liquor.temperature().rt() / FARADAY;
     let value = thermal * (oxidised.potential - reduced.potential) / electrons + liquor.gibbs.electron() / FARADAY;
-    let spread = form_spread(liquor, &oxidised).hypot(form_spread(liquor, &reduced));
+    let spread = spread_of(liquor, &[(&oxidised, 1.0), (&reduced, -1.0)], &[]);
     let potential = Estimate::new(value, thermal * spread / electrons);
     Couple { oxidised, reduced, electrons, potential }
 }
 
-/// Standard uncertainty of a form's potential per atom, units of RT: data, temperature and activity models, and the decade
-/// either way (rectangular) of an assumed total.
-pub fn form_spread(liquor: &Liquor, form: &StateForm) -> f64 {
-    let species = liquor.library.get(form.leading);
-    let count: f64 = species.constituents.iter().filter(|(c, _)| *c == form.constituent).map(|(_, n)| n).sum();
-    let data = liquor.gibbs.of(form.leading).standard_uncertainty / liquor.temperature().rt() / count.max(1.0);
-    let activity = match form.basis {
-        Basis::Liquor | Basis::Assumed(_) => {
-            liquor.activity_model.ln_gamma_uncertainty(species.formula.charge, liquor.ionic_strength) / count.max(1.0)
-        }
+/// Standard uncertainty of Σ n μ over forms of elements, per atom, units of RT: data and temperature models (what the forms
+/// share cancels), activity model, and the decade either way (rectangular) of an assumed total. `solids` enter per formula.
+pub fn spread_of(liquor: &Liquor, forms: &[(&StateForm, f64)], solids: &[(SpeciesId, f64)]) -> f64 {
+    let per_atom = |form: &StateForm| {
+        let held = liquor.library.get(form.leading).constituents.iter().filter(|(c, _)| *c == form.constituent);
+        held.map(|(_, n)| n).sum::<f64>().max(1.0)
+    };
+    let own = forms.iter().map(|(form, n)| (form.leading, n / per_atom(form)));
+    let terms: Vec<_> = own.chain(solids.iter().copied()).collect();
+    let data = liquor.gibbs.spread(liquor.library, &terms) / liquor.temperature().rt();
+    let local = forms.iter().map(|(form, n)| (n / per_atom(form) * local_spread(liquor, form)).powi(2)).sum::<f64>();
+    data.hypot(local.sqrt())
+}
+
+/// What a form's uncertainty owes to the activity model and to an assumed total, units of RT per molecule.
+fn local_spread(liquor: &Liquor, form: &StateForm) -> f64 {
+    let charge = liquor.library.get(form.leading).formula.charge;
+    let activity = liquor.activity_model.ln_gamma_uncertainty(charge, liquor.ionic_strength);
+    match form.basis {
+        Basis::Liquor => activity,
+        Basis::Assumed(_) => activity.hypot(std::f64::consts::LN_10 / 3f64.sqrt()),
         Basis::Condensed | Basis::Gas(_) => 0.0,
-    };
-    let assumed = match form.basis {
-        Basis::Assumed(_) => std::f64::consts::LN_10 / 3f64.sqrt() / count.max(1.0),
-        _ => 0.0,
-    };
-    data.hypot(activity).hypot(assumed)
+    }
 }
 
 /// All couples of `element` with at least one state in the liquor, highest potential first.

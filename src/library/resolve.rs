@@ -107,6 +107,8 @@ fn one(
         form: record.form.clone(),
         name: record.name.clone(),
         gibbs: g.unwrap_or_default(),
+        tied_to: Vec::new(),
+        own_uncertainty: g.unwrap_or_default().standard_uncertainty,
         enthalpy: h,
         entropy: s,
         temperature,
@@ -341,6 +343,8 @@ fn close(i: usize, all: &mut [Species], record: &SpeciesRecord, partners: &[(Spe
         variance += (count * all[id.0].gibbs.standard_uncertainty).powi(2);
     }
     all[i].gibbs = Estimate::new(value, variance.sqrt());
+    all[i].tied_to = partners.to_vec();
+    all[i].own_uncertainty = (per_log * formation.u / own).abs();
     let enthalpies: Option<f64> = partners.iter().map(|(id, count)| all[id.0].enthalpy.map(|h| h.value * count)).sum();
     if let (Some(h), Some(sum)) = (formation.h_kj_mol, enthalpies) {
         all[i].enthalpy = Some(Estimate::new(sum + h * 1e3 / own, 2e3_f64.max(variance.sqrt())));

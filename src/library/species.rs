@@ -70,6 +70,10 @@ pub struct Species {
     pub name: String,
     /// Gibbs energy of formation, J/mol.
     pub gibbs: Estimate,
+    /// Partners that define G° by a measured equilibrium: G° = Σ coefficient · partner + a measured term.
+    pub tied_to: Vec<(SpeciesId, f64)>,
+    /// Standard uncertainty of what is this record's own: of G°, or of the measured term alone when it is tied, J/mol.
+    pub own_uncertainty: f64,
     /// Enthalpy of formation, J/mol.
     pub enthalpy: Option<Estimate>,
     /// Conventional entropy, J/(mol K), S(H⁺) = 0.

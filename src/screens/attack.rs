@@ -1,7 +1,7 @@
 //! How a solid can leave into a liquor: every product of every element in it, weighed at a given potential.
 
 use crate::chemistry::{Constituent, Element};
-use crate::equilibrium::couples::form_spread;
+use crate::equilibrium::couples::spread_of;
 use crate::equilibrium::liquor::is_solvent;
 use crate::equilibrium::states::{self, Basis, StateForm};
 use crate::equilibrium::{Closer, Liquor};
@@ -144,9 +144,7 @@ fn assemble(
 ) -> Option<Path> {
     let species = liquor.library.get(solid);
     let electron = (liquor.gibbs.electron() - FARADAY * e) / liquor.temperature().rt();
-    let gibbs = liquor.gibbs.of(solid);
     let mut energy = -liquor.reduced_gibbs(solid);
-    let mut variance = (gibbs.standard_uncertainty / liquor.temperature().rt()).powi(2);
     let mut electrons = 0.0;
     let mut chosen = Vec::new();
     for (constituent, count) in &species.constituents {
@@ -161,10 +159,11 @@ fn assemble(
             .min_by(|a, b| cost(a).total_cmp(&cost(b)))?;
         electrons += count * (form.oxidation() - constituent.oxidation());
         energy += count * form.potential;
-        variance += (count * form_spread(liquor, &form)).powi(2);
         chosen.push((form, *count));
     }
-    Some(Path { route, products: chosen, electrons, energy: Estimate::new(energy, variance.sqrt()) })
+    let forms: Vec<(&StateForm, f64)> = chosen.iter().map(|(form, n)| (form, *n)).collect();
+    let spread = spread_of(liquor, &forms, &[(solid, -1.0)]);
+    Some(Path { route, products: chosen, electrons, energy: Estimate::new(energy, spread) })
 }
 
 /// Forms that a constituent of a solid may take.

@@ -254,7 +254,7 @@ fn whole_reaction(path: &Path, liquor: &Liquor, record: &Species, driver: &Drive
 fn fill(finding: &mut Finding, liquor: &Liquor, equation: &Equation) {
     let library = liquor.library;
     if equation.electrons == 0.0 {
-        finding.log_k = Some(equation.log_k(&liquor.gibbs).value);
+        finding.log_k = Some(equation.log_k(&liquor.gibbs, liquor.library).value);
     }
     finding.reaction = Some(equation.ascii(library));
     finding.reaction_pretty = Some(equation.pretty(library));

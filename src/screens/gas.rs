@@ -433,7 +433,7 @@ fn finding(setting: &Setting, record: &GasRecord, gas: &Species, release: Releas
         let library = setting.liquor.library;
         finding.reaction = Some(equation.ascii(library));
         finding.reaction_pretty = Some(equation.pretty(library));
-        finding.log_k = (equation.electrons == 0.0).then(|| equation.log_k(&setting.liquor.gibbs).value);
+        finding.log_k = (equation.electrons == 0.0).then(|| equation.log_k(&setting.liquor.gibbs, setting.liquor.library).value);
         finding.sources.extend(equation.terms.iter().map(|(id, _)| library.get(*id).source.clone()));
     }
     finding.products = vec![gas.label()];

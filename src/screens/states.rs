@@ -3,7 +3,7 @@
 //! ΔG against oxidation number: a state above the lower convex hull is driven apart into the two states that bracket it.
 
 use crate::chemistry::Element;
-use crate::equilibrium::couples::{self, form_spread};
+use crate::equilibrium::couples;
 use crate::equilibrium::states::{self as forms, Basis, StateForm};
 use crate::equilibrium::{Closer, Liquor};
 use crate::library::tables::InertRecord;
@@ -115,9 +115,8 @@ fn disproportionation<'l>(
     let up = couples::couple(liquor, upper.clone(), state.clone());
     let thermal = liquor.temperature().rt() / FARADAY;
     let (n_down, n_up) = (down.electrons, up.electrons);
-    let spread = (form_spread(liquor, state) * (1.0 / n_down + 1.0 / n_up))
-        .hypot(form_spread(liquor, lower) / n_down)
-        .hypot(form_spread(liquor, upper) / n_up);
+    let weights = [(state, 1.0 / n_down + 1.0 / n_up), (lower, -1.0 / n_down), (upper, -1.0 / n_up)];
+    let spread = couples::spread_of(liquor, &weights, &[]);
     let driving_force = Estimate::new(down.potential.value - up.potential.value, thermal * spread);
     let share = n_down / (n_down + n_up);
     let held_back = couples::held_back(liquor, &down, None).or_else(|| couples::held_back(liquor, &up, None));
@@ -193,7 +192,7 @@ fn unstable(setting: &Setting, liquor: &Liquor, rung: &Rung, apart: &Disproporti
     };
     let mut finding = Finding::new(Question::State, &subject, None, verdict, attention, statement);
     finding.driving_force = Some(apart.driving_force);
-    finding.log_k = Some(apart.equation.log_k(&liquor.gibbs).value);
+    finding.log_k = Some(apart.equation.log_k(&liquor.gibbs, liquor.library).value);
     finding.reaction = Some(apart.equation.ascii(library));
     finding.reaction_pretty = Some(apart.equation.pretty(library));
     finding.products = [&apart.lower, &apart.upper].iter().map(|f| library.get(f.leading).label()).collect();

@@ -44,15 +44,14 @@ impl Equation {
     }
 
     /// ΔG° at the table's temperature, J per mole of the equation as written; the electron keeps E(H⁺/H₂) = 0.
-    pub fn delta_g(&self, gibbs: &GibbsTable) -> Estimate {
+    pub fn delta_g(&self, gibbs: &GibbsTable, library: &Library) -> Estimate {
         let value: f64 = self.terms.iter().map(|(id, n)| n * gibbs.of(*id).value).sum();
-        let variance: f64 = self.terms.iter().map(|(id, n)| (n * gibbs.of(*id).standard_uncertainty).powi(2)).sum();
-        Estimate::new(value + self.electrons * gibbs.electron(), variance.sqrt())
+        Estimate::new(value + self.electrons * gibbs.electron(), gibbs.spread(library, &self.terms))
     }
 
     /// log₁₀ K at the table's temperature.
-    pub fn log_k(&self, gibbs: &GibbsTable) -> Estimate {
-        self.delta_g(gibbs).scaled(-1.0 / (gibbs.temperature.rt() * std::f64::consts::LN_10))
+    pub fn log_k(&self, gibbs: &GibbsTable, library: &Library) -> Estimate {
+        self.delta_g(gibbs, library).scaled(-1.0 / (gibbs.temperature.rt() * std::f64::consts::LN_10))
     }
 
     /// `2 Fe^3+ + Cu = 2 Fe^2+ + Cu^2+`

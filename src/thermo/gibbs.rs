@@ -1,5 +1,7 @@
 //! G°(T) of every species of the library, each by the model that its record carries.
 
+use std::collections::BTreeMap;
+
 use crate::library::record::HeatCapacity;
 use crate::library::record::Transition;
 use crate::library::{Library, Species, SpeciesId, TemperatureModel};
@@ -19,6 +21,8 @@ pub const RANGE: (Kelvin, Kelvin) = (Kelvin(273.15), Kelvin(573.15));
 pub struct GibbsTable {
     pub temperature: Kelvin,
     values: Vec<Estimate>,
+    /// Standard uncertainty of each record's own part, J/mol.
+    own: Vec<f64>,
     electron: f64,
 }
 
@@ -30,16 +34,19 @@ impl GibbsTable {
     pub fn at(library: &Library, t: Kelvin) -> Result<Self, RangeError> {
         water::check_range("temperature in K", t.0, RANGE.0.0, RANGE.1.0)?;
         let mut values = vec![Estimate::default(); library.species().len()];
+        let mut own = vec![0.0; library.species().len()];
         for id in library.evaluation_order() {
             let species = library.get(*id);
             let change = change(species, library, &values, t)?;
-            let spread = species.gibbs.standard_uncertainty.hypot(model_uncertainty(&species.temperature, t));
+            let model = model_uncertainty(&species.temperature, t);
+            let spread = species.gibbs.standard_uncertainty.hypot(model);
+            own[id.index()] = species.own_uncertainty.hypot(model);
             values[id.index()] = Estimate::new(species.gibbs.value + change, spread);
         }
         let of = |text: &str, state| library.in_state(text, state).map_or(0.0, |s| values[s.id.index()].value);
         let hydrogen = of("H2", crate::library::record::State::Gas);
         let proton = of("H^+", crate::library::record::State::Aqueous);
-        Ok(Self { temperature: t, values, electron: 0.5 * hydrogen - proton })
+        Ok(Self { temperature: t, values, own, electron: 0.5 * hydrogen - proton })
     }
 
     /// Apparent Gibbs energy, J/mol.
@@ -47,9 +54,26 @@ impl GibbsTable {
         self.values[id.index()]
     }
 
+    /// Standard uncertainty of Σ n G over `terms`, J/mol: what species share by being tied to the same partners cancels.
+    pub fn spread(&self, library: &Library, terms: &[(SpeciesId, f64)]) -> f64 {
+        let mut roots: BTreeMap<SpeciesId, f64> = BTreeMap::new();
+        for (id, n) in terms {
+            expand(library, *id, *n, &mut roots);
+        }
+        roots.iter().map(|(id, n)| (n * self.own[id.index()]).powi(2)).sum::<f64>().sqrt()
+    }
+
     /// Energy of the electron that keeps E(H⁺/H₂) = 0 at every temperature, J/mol.
     pub fn electron(&self) -> f64 {
         self.electron
+    }
+}
+
+/// Adds a species' own error and those of all that it is tied to. Ties form no circle: the library resolved them in order.
+fn expand(library: &Library, id: SpeciesId, n: f64, roots: &mut BTreeMap<SpeciesId, f64>) {
+    *roots.entry(id).or_default() += n;
+    for (partner, count) in &library.get(id).tied_to {
+        expand(library, *partner, n * count, roots);
     }
 }
 

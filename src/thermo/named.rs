@@ -238,15 +238,15 @@ fn upward(states: &BTreeMap<i64, f64>) -> f64 {
 /// [`RangeError`] outside 0 … 300 °C.
 pub fn values(equation: &Equation, library: &Library, t: Kelvin) -> Result<ReactionValues, RangeError> {
     let table = GibbsTable::at(library, t)?;
-    let delta_g = equation.delta_g(&table);
+    let delta_g = equation.delta_g(&table, library);
     let (low, high) = (Kelvin((t.0 - 1.0).max(273.15)), Kelvin((t.0 + 1.0).min(573.15)));
-    let over_t = |t: Kelvin| GibbsTable::at(library, t).map(|table| equation.delta_g(&table).value / t.0);
+    let over_t = |t: Kelvin| GibbsTable::at(library, t).map(|table| equation.delta_g(&table, library).value / t.0);
     let slope = (over_t(high)? - over_t(low)?) / (1.0 / high.0 - 1.0 / low.0);
     let moved = electrons_moved(equation, library);
     Ok(ReactionValues {
         delta_g,
         delta_h: slope,
-        log_k: equation.log_k(&table),
+        log_k: equation.log_k(&table, library),
         potential: (moved > 1e-9).then(|| delta_g.scaled(-1.0 / (moved * FARADAY))),
     })
 }

@@ -197,7 +197,7 @@ pub fn ladders(subject: &Subject) -> Vec<Block> {
                         ": {} ({}, log K {})",
                         apart.equation.pretty(library),
                         millivolts(apart.driving_force),
-                        number(apart.equation.log_k(&subject.setting.liquor.gibbs).value, 1)
+                        number(apart.equation.log_k(&subject.setting.liquor.gibbs, library).value, 1)
                     ))
                 }
             };
