@@ -105,8 +105,13 @@ impl<'l> Case<'l> {
             return Err(Diagnostics::new(&scenario.source, desk.problems));
         }
         let t = Kelvin(scenario.liquor.temperature.value.value);
-        let water_per_volume = water_per_volume(library, &solutes, t);
-        let molality = |solute: &Solute| solute.concentration.amount.scaled(solute.per_molality(water_per_volume));
+        let pure_water = water::density(t).map_err(|e| {
+            let place = scenario.liquor.temperature.span.clone();
+            Diagnostics::new(&scenario.source, vec![Diagnostic::new(place, e.to_string(), "out of range")])
+        })?;
+        let solvent = solvent(&solutes, pure_water);
+        let water_per_volume = solvent.water;
+        let molality = |solute: &Solute| solute.concentration.amount.scaled(solute.per_molality(solvent));
         let recipe = recipe(library, scenario, &solutes, &gases, molality);
         let solids = scenario
             .solids
@@ -156,13 +161,12 @@ struct Solute {
 
 impl Solute {
     /// Factor from the concentration as given to mol per kg of water.
-    fn per_molality(&self, water_per_volume: f64) -> f64 {
+    fn per_molality(&self, solvent: Solvent) -> f64 {
         match self.concentration.basis {
             ConcentrationBasis::Molality => 1.0,
-            ConcentrationBasis::AmountPerVolume => 1.0 / water_per_volume,
-            ConcentrationBasis::MassPerVolume => 1.0 / (self.molar_mass_kg * water_per_volume),
-            // Per kg of solution; the water is what the rest of the solution leaves. Set by `water_per_volume`.
-            ConcentrationBasis::MassFraction => 1.0 / self.molar_mass_kg,
+            ConcentrationBasis::AmountPerVolume => 1.0 / solvent.water,
+            ConcentrationBasis::MassPerVolume => 1.0 / (self.molar_mass_kg * solvent.water),
+            ConcentrationBasis::MassFraction => solvent.density / (self.molar_mass_kg * solvent.water),
         }
     }
 }
@@ -291,18 +295,27 @@ impl<'l> Desk<'l> {
     }
 }
 
-/// kg of water per m³ of liquor: the water that the ionic volumes leave (conventional partial molar volumes; solutes
-/// without a tabulated volume are taken to add none). Mass fractions are turned by the density that follows.
-fn water_per_volume(library: &Library, solutes: &[Solute], t: Kelvin) -> f64 {
-    let pure = water::density(t).unwrap_or(997.05);
-    debug_assert!(!library.species().is_empty());
-    let mut water = pure;
+/// The solvent of a liquor: what turns concentrations per volume and per mass into molalities.
+#[derive(Debug, Clone, Copy)]
+struct Solvent {
+    /// kg of water per m³ of liquor
+    water: f64,
+    /// kg of liquor per m³
+    density: f64,
+}
+
+/// Water that the ionic volumes leave (conventional partial molar volumes; solutes without a tabulated volume are taken to
+/// add none), and the density that follows from it and the solutes' mass.
+fn solvent(solutes: &[Solute], pure_water: f64) -> Solvent {
+    let mut solvent = Solvent { water: pure_water, density: pure_water };
     for _ in 0..20 {
-        let moles = |s: &Solute| s.concentration.amount.value * s.per_molality(water) * water;
-        let taken: f64 = solutes.iter().map(|s| moles(s) * s.volume_m3_mol).sum();
-        water = (pure * (1.0 - taken)).clamp(0.3 * pure, 1.05 * pure);
+        let per_volume = |s: &Solute| s.concentration.amount.value * s.per_molality(solvent) * solvent.water;
+        let taken: f64 = solutes.iter().map(|s| per_volume(s) * s.volume_m3_mol).sum();
+        let mass: f64 = solutes.iter().map(|s| per_volume(s) * s.molar_mass_kg).sum();
+        let water = (pure_water * (1.0 - taken)).clamp(0.3 * pure_water, 1.05 * pure_water);
+        solvent = Solvent { water, density: water + mass };
     }
-    water
+    solvent
 }
 
 fn recipe(

@@ -14,6 +14,7 @@ use clap::{Args, Parser, Subcommand};
 
 use crate::library::Library;
 use output::Failure;
+pub use screen::DEMONSTRATION;
 
 /// Hydrometallurgy and corrosion risk screening: one scenario file in, one dated report out.
 ///

@@ -184,6 +184,9 @@ pub struct FilmBreaker {
     /// Total above which practice no longer relies on the film at all, mol/kg.
     #[serde(default)]
     pub act_above_mol_kg: Option<f64>,
+    /// Pitting resistance equivalent number from which an alloy is not given up even then.
+    #[serde(default)]
+    pub holds_from_pren: Option<f64>,
     pub text: String,
 }
 

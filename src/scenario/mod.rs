@@ -1,8 +1,15 @@
 //! TOML text → [`Scenario`]: checked, in SI, every value with its place in the file. It knows nothing of chemistry.
 
 mod diagnostics;
+mod limits;
+mod liquor;
+mod piece;
+mod quantity_text;
 mod read;
+mod syntax;
 mod table;
+#[cfg(test)]
+mod tests;
 mod units;
 
 use std::ops::Range;
@@ -12,6 +19,8 @@ use chrono::NaiveDate;
 use crate::quantity::{Estimate, Kelvin};
 
 pub use diagnostics::{Diagnostic, Diagnostics, Source, nearest};
+use piece::{Fault, Piece};
+use quantity_text::Reading;
 use units::Dimension;
 
 /// A value and the bytes of the source that it was read from.
@@ -147,7 +156,8 @@ impl Scenario {
 /// # Errors
 /// A sentence that says what was expected.
 pub fn temperature(text: &str) -> Result<Kelvin, String> {
-    units::quantity(text, &[Dimension::Temperature]).map(|(e, _)| Kelvin(e.value)).map_err(|fault| sentence(&fault))
+    let reading = in_words(text, &[Dimension::Temperature], limits::temperature)?;
+    Ok(Kelvin(reading.estimate.value))
 }
 
 /// A concentration in words (`1 mol/L`), as commands take it.
@@ -155,12 +165,13 @@ pub fn temperature(text: &str) -> Result<Kelvin, String> {
 /// # Errors
 /// A sentence that says what was expected.
 pub fn concentration(text: &str) -> Result<Concentration, String> {
-    let (amount, dimension) = units::quantity(text, CONCENTRATIONS).map_err(|fault| sentence(&fault))?;
-    Ok(Concentration { amount, basis: basis(dimension) })
+    let reading = in_words(text, CONCENTRATIONS, limits::concentration)?;
+    Ok(Concentration { amount: reading.estimate, basis: basis(reading.dimension) })
 }
 
-fn sentence(fault: &units::Fault) -> String {
-    fault.help.as_ref().map_or_else(|| fault.message.clone(), |help| format!("{}; {help}", fault.message))
+fn in_words(text: &str, expected: &[Dimension], limit: fn(&Reading) -> Result<(), Fault>) -> Result<Reading, String> {
+    let reading = quantity_text::read(Piece::whole(text), expected);
+    reading.and_then(|reading| limit(&reading).map(|()| reading)).map_err(|fault| fault.sentence())
 }
 
 const CONCENTRATIONS: &[Dimension] =

@@ -1,381 +1,330 @@
-//! The sections of a scenario file, each from its table to its part of the [`Scenario`].
+//! The whole file: its sections, each from its table to its part of the [`Scenario`], and what must hold between them.
 
-use std::collections::BTreeSet;
 use std::ops::Range;
 
 use chrono::NaiveDate;
 use toml::Spanned;
 use toml::de::{DeTable, DeValue};
 
-use crate::quantity::Estimate;
-
-use super::diagnostics::{Diagnostic, Diagnostics, Source, nearest};
-use super::table::{Later, Table, concentration_of, positive, quantity_of, text_of};
+use super::diagnostics::{Diagnostic, Diagnostics, Source, line_of, nearest, suggestion};
+use super::table::{Later, REMOVE, Reader, Table, Words, entries};
 use super::units::Dimension;
 use super::{
-    ContactSpec, Duty, LiquorSpec, MeasuredPotential, OxidantSpec, Placed, Scenario, SolidAmount, SolidKind, SolidSpec,
+    ConcentrationBasis, ContactSpec, Duty, LiquorSpec, OxidantSpec, Placed, Scenario, SolidAmount, SolidKind,
+    SolidSpec, limits, liquor, syntax,
 };
 
 const SECTIONS: &[&str] = &["scenario", "liquor", "oxidant", "metal", "mineral", "contact"];
 const LATER_SECTIONS: &[Later] = &[
-    Later { key: "lining", why: "linings are not screened yet" },
-    Later { key: "on_site", why: "wrong-reagent upsets are not screened yet" },
-    Later { key: "upset", why: "upsets are not screened yet" },
-    Later { key: "measured_couple", why: "potential tables are not reconciled yet" },
+    Later { key: "lining", why: "no lining is screened" },
+    Later { key: "on_site", why: "no wrong reagent is screened" },
+    Later { key: "upset", why: "no deviation is screened" },
+    Later { key: "measured_couple", why: "no potential table is reconciled" },
 ];
-const LATER_LIQUOR: &[Later] = &[
-    Later { key: "free_acid", why: "pH is not computed from free acid yet: give `pH`" },
-    Later { key: "free_base", why: "pH is not computed from free base yet: give `pH`" },
-    Later { key: "headspace", why: "headspace concentrations are not computed yet" },
-    Later { key: "ventilation", why: "dilution is not computed yet" },
-];
-const LIQUOR_KEYS: &[&str] = &["pH", "temperature", "volume", "pulp_density", "potential", "dissolved", "gas"];
+const TITLE: Words =
+    Words { table: "[scenario]", keys: &["title", "reference", "revision", "prepared_by", "date"], later: &[] };
+const OXIDANT: Words = Words { table: "[[oxidant]]", keys: &["name", "species", "amount"], later: &[] };
 const SOLID_KEYS: &[&str] = &["name", "material", "duty", "amount", "area"];
+const METAL: Words = Words { table: "[[metal]]", keys: SOLID_KEYS, later: &[] };
+const MINERAL: Words = Words { table: "[[mineral]]", keys: SOLID_KEYS, later: &[] };
+const CONTACT: Words = Words { table: "[[contact]]", keys: &["name", "metals"], later: &[] };
 
 /// Reads the whole file.
 pub fn scenario(source: Source) -> Result<Scenario, Diagnostics> {
-    let text = source.text.clone();
-    // A byte-order mark is no part of the text; positions are given back with it.
-    let (body, shift) = text.strip_prefix('\u{feff}').map_or((text.as_str(), 0), |rest| (rest, 3));
-    let root = match DeTable::parse(body) {
-        Ok(root) => root,
-        Err(error) => {
-            let span = error.span().unwrap_or(0..0);
-            let span = span.start + shift..span.end + shift;
-            let problem =
-                Diagnostic::new(span, format!("not valid TOML: {}", error.message().replace('\n', ", ")), "here");
-            return Err(Diagnostics::new(&source, vec![problem]));
-        }
-    };
-    let mut problems = Vec::new();
-    let scenario = sections(&source, root.get_ref(), &mut problems);
-    for problem in &mut problems {
-        problem.span = problem.span.start + shift..problem.span.end + shift;
+    let (root, errors) = DeTable::parse_recoverable(&source.text);
+    let mut problems = syntax::diagnostics(&source.text, &errors);
+    if !syntax::is_confined(&errors) {
+        return Err(Diagnostics::new(&source, problems));
     }
-    match scenario {
-        Some(scenario) if problems.is_empty() => Ok(scenario),
+    let mut reader = Reader::new(&source.text);
+    let parts = Parts::read(root.get_ref(), &mut reader);
+    // What a line that is not TOML was taken to mean is not worth a second message.
+    let line = |problem: &Diagnostic| line_of(&source.text, problem.span.start);
+    let unreadable: Vec<usize> = problems.iter().map(line).collect();
+    problems.extend(reader.problems.into_iter().filter(|problem| !unreadable.contains(&line(problem))));
+    match (parts.title, parts.liquor) {
+        (Some(title), Some(liquor)) if problems.is_empty() => Ok(Scenario {
+            source,
+            title: title.title,
+            reference: title.reference,
+            revision: title.revision,
+            prepared_by: title.prepared_by,
+            date: title.date,
+            liquor,
+            oxidants: parts.oxidants,
+            solids: parts.solids,
+            contacts: parts.contacts,
+        }),
         _ => Err(Diagnostics::new(&source, problems)),
     }
 }
 
-fn sections<'t>(source: &Source, root: &'t DeTable<'t>, problems: &mut Vec<Diagnostic>) -> Option<Scenario> {
-    let mut title = None;
-    let mut liquor = None;
-    let mut oxidants = Vec::new();
-    let mut solids = Vec::new();
-    let mut contacts = Vec::new();
-    let mut seen = BTreeSet::new();
-    let mut entries: Vec<_> = root.iter().collect();
-    entries.sort_by_key(|(key, _)| key.span().start);
-    for (key, value) in entries {
-        let name = key.get_ref().to_string();
-        seen.insert(name.clone());
-        match name.as_str() {
-            "scenario" => title = single("[scenario]", value, problems).and_then(|t| title_block(t, problems)),
-            "liquor" => liquor = single("[liquor]", value, problems).and_then(|t| liquor_block(t, problems)),
-            "oxidant" => oxidants = many("[[oxidant]]", value, problems, oxidant),
-            "metal" => solids.extend(many("[[metal]]", value, problems, |t, p| solid(SolidKind::Metal, t, p))),
-            "mineral" => solids.extend(many("[[mineral]]", value, problems, |t, p| solid(SolidKind::Mineral, t, p))),
-            "contact" => contacts = many("[[contact]]", value, problems, contact),
-            _ => unknown_section(&name, key.span(), problems),
-        }
-    }
-    for section in ["scenario", "liquor"] {
-        if !seen.contains(section) {
-            problems.push(Diagnostic::new(0..0, format!("the section [{section}] is missing"), "a scenario needs it"));
-        }
-    }
-    solids.sort_by_key(|s| s.name.span.start);
-    check_names(&solids, &contacts, problems);
-    let liquor = liquor?;
-    check_amounts(&liquor, &solids, problems);
-    let (title, reference, revision, prepared_by, date) = title?;
-    Some(Scenario {
-        source: source.clone(),
-        title,
-        reference,
-        revision,
-        prepared_by,
-        date,
-        liquor,
-        oxidants,
-        solids,
-        contacts,
-    })
+/// What `[scenario]` says.
+struct Title {
+    title: String,
+    reference: Option<String>,
+    revision: Option<String>,
+    prepared_by: Option<String>,
+    date: Option<NaiveDate>,
 }
 
-fn unknown_section(name: &str, span: Range<usize>, problems: &mut Vec<Diagnostic>) {
-    if let Some(refused) = LATER_SECTIONS.iter().find(|l| l.key == name) {
-        let message = format!("`{name}` is not screened by this version");
-        problems
-            .push(Diagnostic::new(span, message, refused.why).with_help("remove it: nothing in it would be computed"));
+/// The sections as far as they have been read.
+#[derive(Default)]
+struct Parts {
+    title: Option<Title>,
+    liquor: Option<LiquorSpec>,
+    oxidants: Vec<OxidantSpec>,
+    solids: Vec<SolidSpec>,
+    contacts: Vec<ContactSpec>,
+    /// Names of all solids, those with mistakes included.
+    solid_names: Vec<Placed<String>>,
+}
+
+impl Parts {
+    fn read<'t>(root: &'t DeTable<'t>, reader: &mut Reader) -> Self {
+        let sections = entries(root);
+        let written: Vec<&str> = sections.iter().map(|(key, _)| key.value.as_str()).collect();
+        let mut read: Vec<&str> = Vec::new();
+        let mut parts = Self::default();
+        for (key, value) in &sections {
+            let name = key.value.as_str();
+            if SECTIONS.contains(&name) {
+                parts.section(name, value, reader);
+                read.push(name);
+                continue;
+            }
+            unknown_section(key, value, reader);
+            // A misspelt section is read as the one that was meant, for the mistakes inside it.
+            let meant = nearest(name, SECTIONS).filter(|meant| !written.contains(meant) && !read.contains(meant));
+            if let (Some(meant), DeValue::Table(_) | DeValue::Array(_)) = (meant, value.get_ref()) {
+                parts.section(meant, value, reader);
+                read.push(meant);
+            }
+        }
+        for section in ["scenario", "liquor"].into_iter().filter(|section| !read.contains(section)) {
+            reader.report_at_end(format!("the section [{section}] is missing"), "a scenario needs it");
+        }
+        parts.solids.sort_by_key(|solid| solid.name.span.start);
+        parts.check(reader);
+        parts
+    }
+
+    fn section<'t>(&mut self, name: &str, value: &'t Spanned<DeValue<'t>>, reader: &mut Reader) {
+        match name {
+            "scenario" => {
+                let table = reader.table_of("[scenario]", value);
+                self.title = table.and_then(|table| title(value.span(), table, reader));
+            }
+            "liquor" => {
+                let table = reader.table_of("[liquor]", value);
+                self.liquor = table.and_then(|table| liquor::read(value.span(), table, reader));
+            }
+            "oxidant" => {
+                for table in many(&OXIDANT, value, reader) {
+                    self.oxidants.extend(oxidant(table, reader));
+                }
+            }
+            "metal" => self.read_solids(SolidKind::Metal, many(&METAL, value, reader), reader),
+            "mineral" => self.read_solids(SolidKind::Mineral, many(&MINERAL, value, reader), reader),
+            _ => {
+                for table in many(&CONTACT, value, reader) {
+                    self.contacts.extend(contact(table, reader));
+                }
+            }
+        }
+    }
+
+    fn read_solids(&mut self, kind: SolidKind, tables: Vec<Table>, reader: &mut Reader) {
+        for mut table in tables {
+            let name = table.required_text("name", reader);
+            self.solid_names.extend(name.clone());
+            self.solids.extend(solid(kind, name, table, reader));
+        }
+    }
+
+    /// What must hold between the sections.
+    fn check(&mut self, reader: &mut Reader) {
+        self.solid_names.sort_by_key(|name| name.span.start);
+        check_unique("solids", &self.solid_names, reader);
+        let oxidants: Vec<_> = self.oxidants.iter().map(|oxidant| oxidant.name.clone()).collect();
+        check_unique("oxidants", &oxidants, reader);
+        let contacts: Vec<_> = self.contacts.iter().map(|contact| contact.name.clone()).collect();
+        check_unique("contacts", &contacts, reader);
+        let mut names: Vec<&str> = self.solid_names.iter().map(|name| name.value.as_str()).collect();
+        names.sort_unstable();
+        names.dedup();
+        for contact in &self.contacts {
+            check_members(contact, &names, reader);
+        }
+        let Some(liquor) = &self.liquor else { return };
+        check_shares(liquor, &self.oxidants, reader);
+        for solid in &self.solids {
+            if let (Some(Placed { value: SolidAmount::PerOre(_), span }), None) = (&solid.amount, &liquor.pulp_density)
+            {
+                let message = "an amount per mass of ore needs the pulp density";
+                let problem = Diagnostic::new(span.clone(), message, "per ore");
+                reader.report(problem.with_help("give `pulp_density` in [liquor], or the amount in kg/m3"));
+            }
+        }
+    }
+}
+
+fn unknown_section(key: &Placed<String>, value: &Spanned<DeValue>, reader: &mut Reader) {
+    let name = key.value.as_str();
+    let span = key.span.clone();
+    if let Some(later) = LATER_SECTIONS.iter().find(|later| later.key == name) {
+        let brackets = if matches!(value.get_ref(), DeValue::Array(_)) { ("[[", "]]") } else { ("[", "]") };
+        let message = format!("`{}{name}{}` is not screened by this version", brackets.0, brackets.1);
+        reader.report(Diagnostic::new(span, message, later.why).with_help(REMOVE));
+        return;
+    }
+    let home = [&TITLE, &liquor::WORDS].into_iter().find(|words| words.keys.contains(&name));
+    if let Some(words) = home {
+        let problem = Diagnostic::new(span, format!("`{name}` stands outside its section"), "in no section");
+        reader.report(problem.with_help(format!("write it below the line {}", words.table)));
         return;
     }
     let problem = Diagnostic::new(span, format!("`{name}` is not a section of a scenario"), "unknown section");
-    problems.push(
-        problem.with_help(
-            nearest(name, SECTIONS)
-                .map_or_else(|| format!("sections: {}", SECTIONS.join(", ")), |word| format!("did you mean `{word}`?")),
-        ),
-    );
+    reader.report(problem.with_help(suggestion(name, SECTIONS, "sections")));
 }
 
-fn single<'t>(
-    name: &'static str,
-    value: &'t Spanned<DeValue<'t>>,
-    problems: &mut Vec<Diagnostic>,
-) -> Option<Table<'t>> {
-    match value.get_ref() {
-        DeValue::Table(table) => Some(Table::new(name, value.span(), table)),
+/// The tables of a repeated section. A single one is read as well, after its brackets have been reported.
+fn many<'t>(words: &Words, value: &'t Spanned<DeValue<'t>>, reader: &mut Reader) -> Vec<Table<'t>> {
+    let list: Vec<&'t Spanned<DeValue<'t>>> = match value.get_ref() {
+        DeValue::Array(items) => items.iter().collect(),
         _ => {
-            problems.push(Diagnostic::new(value.span(), format!("{name} is one table"), "not a table"));
-            None
+            let message = format!("{} is written with double brackets", words.table);
+            let problem = Diagnostic::new(value.span(), message, "not a list of tables");
+            reader.report(problem.with_help(format!("begin each with a line {}", words.table)));
+            vec![value]
         }
-    }
-}
-
-fn many<'t, T>(
-    name: &'static str,
-    value: &'t Spanned<DeValue<'t>>,
-    problems: &mut Vec<Diagnostic>,
-    mut read: impl FnMut(Table<'t>, &mut Vec<Diagnostic>) -> Option<T>,
-) -> Vec<T> {
-    let DeValue::Array(items) = value.get_ref() else {
-        let problem = Diagnostic::new(
-            value.span(),
-            format!("{name} is written with double brackets"),
-            "one table, not a list of them",
-        );
-        problems.push(problem.with_help(format!("begin each with a line `{name}`")));
-        return Vec::new();
     };
-    let mut list = Vec::new();
-    for item in items.iter() {
-        if let Some(table) = single(name, item, problems) {
-            list.extend(read(table, problems));
+    let mut tables = Vec::new();
+    for item in list {
+        if let Some(table) = reader.table_of(words.table, item) {
+            tables.push(Table::open(words, item.span(), table, reader));
         }
     }
-    list
+    tables
 }
 
-type Title = (String, Option<String>, Option<String>, Option<String>, Option<NaiveDate>);
-
-fn title_block(mut table: Table, problems: &mut Vec<Diagnostic>) -> Option<Title> {
-    let title = table.required_text("title", problems);
-    let mut optional = |key| table.text(key, problems).map(|t| t.value);
+fn title<'t>(span: Range<usize>, table: &'t DeTable<'t>, reader: &mut Reader) -> Option<Title> {
+    let mut table = Table::open(&TITLE, span, table, reader);
+    let title = table.required_text("title", reader);
+    let mut optional = |key| table.optional_text(key, reader).map(|text| text.value);
     let (reference, revision, prepared_by) = (optional("reference"), optional("revision"), optional("prepared_by"));
-    let date = table.value("date").and_then(|value| date_of(value, problems));
-    table.finish(&["title", "reference", "revision", "prepared_by", "date"], &[], problems);
-    Some((title?.value, reference, revision, prepared_by, date))
+    let date = table.optional("date").and_then(|value| date(value, reader));
+    Some(Title { title: title?.value, reference, revision, prepared_by, date })
 }
 
-fn date_of(value: &Spanned<DeValue>, problems: &mut Vec<Diagnostic>) -> Option<NaiveDate> {
+fn date(value: &Spanned<DeValue>, reader: &mut Reader) -> Option<NaiveDate> {
     let text = match value.get_ref() {
         DeValue::Datetime(date) => date.to_string(),
         DeValue::String(text) => text.to_string(),
         _ => String::new(),
     };
-    let date = text.parse::<NaiveDate>().ok();
+    let date = text.trim().parse::<NaiveDate>().ok();
     if date.is_none() {
-        problems.push(Diagnostic::new(value.span(), "`date` is a date such as 2026-11-30", "not a date"));
+        let problem = Diagnostic::new(value.span(), "`date` is not a date", "not a day of the calendar");
+        reader.report(problem.with_help("write year, month and day: 2026-11-30"));
     }
     date
 }
 
-fn liquor_block(mut table: Table, problems: &mut Vec<Diagnostic>) -> Option<LiquorSpec> {
-    let ph = table.required_quantity("pH", &[Dimension::Number], problems).and_then(|v| ph_in_range(v, problems));
-    let temperature = table.required_quantity("temperature", &[Dimension::Temperature], problems);
-    let temperature = temperature.and_then(|v| temperature_in_range(v, problems));
-    let volume = optional_positive(&mut table, "volume", &[Dimension::Volume], problems);
-    let pulp_density = optional_positive(&mut table, "pulp_density", &[Dimension::MassPerVolume], problems);
-    let potential = table.text("potential", problems).and_then(|text| potential_of(&text, problems));
-    let mut dissolved = Vec::new();
-    if let Some(inner) = table.value("dissolved").and_then(|v| single("dissolved", v, problems)) {
-        for (name, value) in inner.entries() {
-            dissolved.extend(concentration_of(&name.value, value, problems).map(|c| (name, c)));
-        }
-    }
-    let mut gas = Vec::new();
-    if let Some(inner) = table.value("gas").and_then(|v| single("gas", v, problems)) {
-        for (name, value) in inner.entries() {
-            let Some(read) = quantity_of(&name.value, value, &[Dimension::Pressure], problems) else { continue };
-            if positive(&name.value, read.value.0.value, &read.span, problems).is_some() {
-                gas.push((name, plain(read)));
-            }
-        }
-    }
-    table.finish(LIQUOR_KEYS, LATER_LIQUOR, problems);
-    Some(LiquorSpec { ph: ph?, temperature: temperature?, volume, pulp_density, potential, dissolved, gas })
-}
-
-fn plain(read: Placed<(Estimate, Dimension)>) -> Placed<Estimate> {
-    Placed { value: read.value.0, span: read.span }
-}
-
-fn optional_positive(
-    table: &mut Table,
-    key: &str,
-    expected: &[Dimension],
-    problems: &mut Vec<Diagnostic>,
-) -> Option<Placed<Estimate>> {
-    let read = table.quantity(key, expected, problems)?;
-    positive(key, read.value.0.value, &read.span, problems).map(|()| plain(read))
-}
-
-fn ph_in_range(read: Placed<(Estimate, Dimension)>, problems: &mut Vec<Diagnostic>) -> Option<Placed<Estimate>> {
-    let value = read.value.0.value;
-    if (-2.0..=16.0).contains(&value) {
-        return Some(plain(read));
-    }
-    let mut problem = Diagnostic::new(read.span, format!("pH {value} is outside −2 … 16"), "not a pH of a liquor");
-    if (20.0..160.0).contains(&value) {
-        problem = problem.with_help(format!("did you mean {}?", value / 10.0));
-    }
-    problems.push(problem);
-    None
-}
-
-fn temperature_in_range(
-    read: Placed<(Estimate, Dimension)>,
-    problems: &mut Vec<Diagnostic>,
-) -> Option<Placed<Estimate>> {
-    let celsius = read.value.0.value - 273.15;
-    if (0.0..=300.0).contains(&celsius) {
-        return Some(plain(read));
-    }
-    let message = format!("temperature {celsius:.1} °C is outside 0 … 300 °C, where the models hold");
-    problems.push(Diagnostic::new(read.span, message, "out of range"));
-    None
-}
-
-fn potential_of(text: &Placed<String>, problems: &mut Vec<Diagnostic>) -> Option<Placed<MeasuredPotential>> {
-    let (value, electrode) = match text.value.split_once(" vs ") {
-        Some((value, electrode)) => (value, electrode.trim().trim_start_matches("the ").to_owned()),
-        None => (text.value.as_str(), "SHE".to_owned()),
-    };
-    match super::units::quantity(value, &[Dimension::Potential]) {
-        Ok((volts, _)) if volts.value.abs() <= 3.0 => {
-            let electrode = Placed { value: electrode, span: text.span.clone() };
-            Some(Placed { value: MeasuredPotential { volts, electrode }, span: text.span.clone() })
-        }
-        Ok((volts, _)) => {
-            let message = format!("potential {} V is outside −3 … 3 V", volts.value);
-            problems.push(Diagnostic::new(text.span.clone(), message, "out of range"));
-            None
-        }
-        Err(fault) => {
-            let mut problem =
-                Diagnostic::new(text.span.clone(), format!("`potential`: {}", fault.message), "cannot be read");
-            problem.help = fault.help.or_else(|| Some("such as \"640 mV vs Ag/AgCl 3 M KCl\"".into()));
-            problems.push(problem);
-            None
-        }
-    }
-}
-
-fn oxidant(mut table: Table, problems: &mut Vec<Diagnostic>) -> Option<OxidantSpec> {
-    let name = table.required_text("name", problems);
-    let species = table.required_text("species", problems);
-    let span = table.span.clone();
-    let amount = match table.value("amount") {
-        Some(value) => concentration_of("amount", value, problems),
-        None => {
-            problems.push(Diagnostic::new(span, "[[oxidant]] needs `amount`", "`amount` is missing"));
-            None
-        }
-    };
-    table.finish(&["name", "species", "amount"], &[], problems);
+fn oxidant(mut table: Table, reader: &mut Reader) -> Option<OxidantSpec> {
+    let name = table.required_text("name", reader);
+    let species = table.required_text("species", reader);
+    let amount = table.required("amount", reader).and_then(|value| reader.concentration_of("amount", value));
     Some(OxidantSpec { name: name?, species: species?, amount: amount? })
 }
 
-fn solid(kind: SolidKind, mut table: Table, problems: &mut Vec<Diagnostic>) -> Option<SolidSpec> {
-    let name = table.required_text("name", problems);
-    let material = table.required_text("material", problems);
-    let duty = table.required_text("duty", problems).and_then(|text| duty_of(text, problems));
-    let amount = table
-        .quantity("amount", &[Dimension::MassPerVolume, Dimension::MassFraction], problems)
-        .filter(|read| positive("amount", read.value.0.value, &read.span, problems).is_some())
-        .map(|read| {
-            let (amount, dimension) = read.value;
-            let value = if dimension == Dimension::MassFraction {
-                SolidAmount::PerOre(amount)
-            } else {
-                SolidAmount::PerLiquor(amount)
-            };
-            Placed { value, span: read.span }
-        });
-    let area = optional_positive(&mut table, "area", &[Dimension::Area], problems);
-    table.finish(SOLID_KEYS, &[], problems);
+fn solid(kind: SolidKind, name: Option<Placed<String>>, mut table: Table, reader: &mut Reader) -> Option<SolidSpec> {
+    let material = table.required_text("material", reader);
+    let duty = table.required_text("duty", reader).and_then(|text| duty(text, reader));
+    let amount = table.optional("amount").and_then(|value| solid_amount(value, reader));
+    let area = table.optional_positive("area", Dimension::Area, reader);
     Some(SolidSpec { kind, name: name?, material: material?, duty: duty?, amount, area })
 }
 
-fn duty_of(text: Placed<String>, problems: &mut Vec<Diagnostic>) -> Option<Placed<Duty>> {
+fn solid_amount(value: &Spanned<DeValue>, reader: &mut Reader) -> Option<Placed<SolidAmount>> {
+    let expected = [Dimension::MassPerVolume, Dimension::MassFraction];
+    let read = reader.quantity_of("amount", value, &expected, limits::solid_amount)?;
+    let amount = match read.value.dimension {
+        Dimension::MassFraction => SolidAmount::PerOre(read.value.estimate),
+        _ => SolidAmount::PerLiquor(read.value.estimate),
+    };
+    Some(Placed { value: amount, span: read.span })
+}
+
+fn duty(text: Placed<String>, reader: &mut Reader) -> Option<Placed<Duty>> {
     let value = match text.value.as_str() {
         "dissolve" => Duty::Dissolve,
         "resist" => Duty::Resist,
         other => {
-            let help = nearest(other, &["dissolve", "resist"])
-                .map_or("duties: dissolve, resist".into(), |w| format!("did you mean `{w}`?"));
-            problems.push(
-                Diagnostic::new(text.span, format!("`{other}` is not a duty"), "`dissolve` or `resist`")
-                    .with_help(help),
-            );
+            let problem = Diagnostic::new(text.span, format!("`{other}` is not a duty"), "`dissolve` or `resist`");
+            reader.report(problem.with_help(suggestion(other, &["dissolve", "resist"], "duties")));
             return None;
         }
     };
     Some(Placed { value, span: text.span })
 }
 
-fn contact(mut table: Table, problems: &mut Vec<Diagnostic>) -> Option<ContactSpec> {
-    let name = table.required_text("name", problems);
-    let span = table.span.clone();
-    let metals = match table.value("metals").map(|v| (v, v.get_ref())) {
-        Some((_, DeValue::Array(items))) => {
-            items.iter().filter_map(|item| text_of("metals", item, problems)).collect::<Vec<_>>()
-        }
-        Some((value, _)) => {
-            problems.push(Diagnostic::new(value.span(), "`metals` is a list of names", "not a list"));
-            Vec::new()
-        }
-        None => {
-            problems.push(Diagnostic::new(span.clone(), "[[contact]] needs `metals`", "`metals` is missing"));
-            Vec::new()
-        }
+fn contact(mut table: Table, reader: &mut Reader) -> Option<ContactSpec> {
+    let name = table.required_text("name", reader);
+    let value = table.required("metals", reader)?;
+    let DeValue::Array(items) = value.get_ref() else {
+        let problem = Diagnostic::new(value.span(), "`metals` is a list of names", "not a list");
+        reader.report(problem.with_help("write it as in metals = [\"tank shell\", \"agitator\"]"));
+        return None;
     };
-    if metals.len() == 1 {
-        problems.push(Diagnostic::new(metals[0].span.clone(), "a contact has two members or more", "only one"));
+    if items.len() < 2 {
+        reader.report(Diagnostic::new(value.span(), "a contact has two members or more", "too few"));
     }
-    table.finish(&["name", "metals"], &[], problems);
+    let metals = items.iter().filter_map(|item| reader.text_of("metals", item)).collect();
     Some(ContactSpec { name: name?, metals })
 }
 
-fn check_names(solids: &[SolidSpec], contacts: &[ContactSpec], problems: &mut Vec<Diagnostic>) {
-    let mut seen = BTreeSet::new();
-    for solid in solids {
-        if !seen.insert(solid.name.value.as_str()) {
-            let message = format!("two solids are named `{}`", solid.name.value);
-            problems.push(Diagnostic::new(solid.name.span.clone(), message, "the second"));
+/// Shares of the solution by mass must leave some of it for the water.
+fn check_shares(liquor: &LiquorSpec, oxidants: &[OxidantSpec], reader: &mut Reader) {
+    let dissolved = liquor.dissolved.iter().map(|(_, amount)| amount);
+    let mut sum = 0.0;
+    for amount in dissolved.chain(oxidants.iter().map(|oxidant| &oxidant.amount)) {
+        if amount.value.basis != ConcentrationBasis::MassFraction {
+            continue;
         }
-    }
-    let names: Vec<&str> = seen.into_iter().collect();
-    for member in contacts.iter().flat_map(|c| &c.metals) {
-        if !names.contains(&member.value.as_str()) {
-            let mut problem = Diagnostic::new(
-                member.span.clone(),
-                format!("no metal is named `{}`", member.value),
-                "not in this file",
-            );
-            problem.help = nearest(&member.value, &names).map(|word| format!("did you mean `{word}`?"));
-            problems.push(problem);
+        sum += amount.value.amount.value;
+        if sum >= 1.0 {
+            let problem =
+                Diagnostic::new(amount.span.clone(), "the shares make up the whole solution", "100 % or more");
+            reader.report(problem.with_help("leave some for the water"));
+            return;
         }
     }
 }
 
-fn check_amounts(liquor: &LiquorSpec, solids: &[SolidSpec], problems: &mut Vec<Diagnostic>) {
-    for solid in solids {
-        if let (Some(Placed { value: SolidAmount::PerOre(_), span }), None) = (&solid.amount, &liquor.pulp_density) {
-            let problem = Diagnostic::new(span.clone(), "an amount per tonne of ore needs the pulp density", "per ore");
-            problems.push(problem.with_help("give `pulp_density` in [liquor], or the amount in kg/m3"));
+fn check_unique(plural: &str, names: &[Placed<String>], reader: &mut Reader) {
+    for (place, name) in names.iter().enumerate() {
+        if names[..place].iter().any(|earlier| earlier.value == name.value) {
+            let message = format!("two {plural} are named `{}`", name.value);
+            let problem = Diagnostic::new(name.span.clone(), message, "the second");
+            reader.report(problem.with_help("give each a name of its own"));
+        }
+    }
+}
+
+fn check_members(contact: &ContactSpec, names: &[&str], reader: &mut Reader) {
+    for (place, member) in contact.metals.iter().enumerate() {
+        if contact.metals[..place].iter().any(|earlier| earlier.value == member.value) {
+            let message = format!("`{}` stands twice in one contact", member.value);
+            reader.report(Diagnostic::new(member.span.clone(), message, "the second"));
+        }
+        if !names.contains(&member.value.as_str()) {
+            let message = format!("no solid is named `{}`", member.value);
+            let problem = Diagnostic::new(member.span.clone(), message, "not in this file");
+            reader.report(problem.with_help(match names {
+                [] => "add a [[metal]] of that name".to_owned(),
+                names => suggestion(&member.value, names, "solids"),
+            }));
         }
     }
 }

@@ -38,7 +38,7 @@ fn series_range(setting: &Setting, solid: &Solid) -> Option<[f64; 2]> {
     let record = record(solid)?;
     let top =
         setting.drivers.iter().filter(|d| d.held_back.is_none()).map(|d| d.potential.value).fold(f64::MIN, f64::max);
-    let holds = super::dissolution::film(setting, solid, top).is_some_and(|f| f.holds());
+    let holds = super::film::film(setting, solid, top).is_some_and(|f| f.holds());
     match (record.film && !holds, record.seawater_potential_active_v_she) {
         (true, Some(active)) => Some(active),
         _ => record.seawater_potential_v_she,
@@ -64,14 +64,14 @@ fn pair(setting: &Setting, contact: &Contact, a: &Solid, b: &Solid) -> Finding {
     let ratio_words = ratio.map_or(" (no areas given)".into(), |r| format!(" (cathode to anode area {r:.0} to 1)"));
     let statement = match verdict {
         Verdict::Driven => format!(
-            "In contact {}, {} is the likely anode to {}: {} apart by the practical series{ratio_words}.",
+            "Contact “{}”: {} is the likely anode to {}, {} apart by the practical series{ratio_words}.",
             contact.name,
             anode.name,
             cathode.name,
             text::millivolts(gap)
         ),
         _ => format!(
-            "In contact {}, {} and {} stand close in the practical series ({}); either may be the anode.",
+            "Contact “{}”: {} and {} stand close in the practical series ({}); either may be the anode.",
             contact.name,
             anode.name,
             cathode.name,
@@ -98,7 +98,7 @@ fn pair(setting: &Setting, contact: &Contact, a: &Solid, b: &Solid) -> Finding {
 
 fn not_assessed(contact: &Contact, a: &Solid, b: &Solid) -> Finding {
     let statement = format!(
-        "Contact {} between {} and {} is not assessed: the library has no practical potential for one of them.",
+        "Contact “{}” between {} and {} is not assessed: the library has no practical potential for one of them.",
         contact.name, a.name, b.name
     );
     let against = format!("{} | {}", contact.name, b.name);

@@ -142,7 +142,9 @@ fn driver<'l>(case: &Case<'l>, liquor: &Liquor<'l>, couple: Couple) -> Driver<'l
     let oxidised = named.map_or_else(|| plain_form(liquor, &couple.oxidised), |o| o.species);
     let reduced = plain_form(liquor, &couple.reduced);
     let (ox, red) = (library.get(oxidised), library.get(reduced));
-    let deposits_metal = couple.reduced.oxidation() == 0.0 && couple.reduced.basis == Basis::Condensed;
+    let deposits_metal = couple.reduced.constituent.element().is_some_and(Element::is_metal)
+        && couple.reduced.oxidation() == 0.0
+        && couple.reduced.basis == Basis::Condensed;
     let half = half_reaction(liquor, &couple);
     Driver {
         label: format!("{}/{}", ox.text, red.text),

@@ -4,7 +4,9 @@ use std::collections::BTreeMap;
 
 use serde::Serialize;
 
+use crate::equilibrium::Liquor;
 use crate::quantity::Estimate;
+use crate::thermo::equation::Equation;
 
 /// The question that a finding answers.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Hash, Serialize)]
@@ -104,6 +106,8 @@ pub struct Finding {
     pub attention: Attention,
     /// One plain sentence.
     pub statement: String,
+    /// Practice finds the couple too slow to count on.
+    pub held_back: bool,
     /// E(oxidant) − E(dissolution), V; positive drives the solid into solution.
     pub driving_force: Option<Estimate>,
     /// At the liquor's conditions, J per mole of the subject.
@@ -149,6 +153,7 @@ impl Finding {
             verdict,
             attention,
             statement,
+            held_back: false,
             driving_force: None,
             delta_g: None,
             log_k: None,
@@ -160,6 +165,17 @@ impl Finding {
             sources: Vec::new(),
             cautions: Vec::new(),
         }
+    }
+
+    /// Takes over a reaction: its text, its log K when no electron is left over, and the sources of its species.
+    pub fn take_equation(&mut self, equation: &Equation, liquor: &Liquor) {
+        let library = liquor.library;
+        if equation.electrons == 0.0 {
+            self.log_k = Some(equation.log_k(&liquor.gibbs, library).value);
+        }
+        self.reaction = Some(equation.ascii(library));
+        self.reaction_pretty = Some(equation.pretty(library));
+        self.sources.extend(equation.terms.iter().map(|(id, _)| library.get(*id).source.clone()));
     }
 }
 

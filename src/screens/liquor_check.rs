@@ -77,7 +77,7 @@ fn open_charge(setting: &Setting) -> Option<Finding> {
             "The composition leaves {:.2} mol/kg of charge open: {missing} that are not listed are taken as an inert single-charged ion in the ionic strength.",
             open.abs()
         );
-        Finding::new(Question::Liquor, "composition", None, Verdict::NotAssessed, Attention::Review, statement)
+        Finding::new(Question::Liquor, "composition", None, Verdict::NotAssessed, Attention::Note, statement)
     })
 }
 

@@ -4,6 +4,7 @@ pub mod attack;
 pub mod contact;
 pub mod dissolution;
 pub mod drivers;
+pub mod film;
 pub mod finding;
 pub mod gas;
 pub mod liquor_check;

@@ -110,10 +110,9 @@ fn duties(subject: &Subject) -> Block {
 
 /// The finding that decides a solid: the strongest driving force that practice does not hold back.
 pub fn governing<'f>(own: &[&'f Finding]) -> Option<&'f Finding> {
-    let held_back = |f: &Finding| f.reasons.iter().any(|r| r.starts_with("Held back"));
     let measured = own.iter().find(|f| f.against.as_deref() == Some("measured potential"));
     let driven = |f: &&&&Finding| f.verdict == Verdict::Driven;
-    let strongest = own.iter().filter(|f| !held_back(f)).max_by(|a, b| force(a).total_cmp(&force(b)));
+    let strongest = own.iter().filter(|f| !f.held_back).max_by(|a, b| force(a).total_cmp(&force(b)));
     let acid_alone = own.iter().filter(|f| f.driving_force.is_none()).find(|f| f.verdict == Verdict::Driven);
     measured.or(strongest.as_ref().filter(driven).copied()).or(acid_alone).or(strongest).copied()
 }
