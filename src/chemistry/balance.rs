@@ -309,6 +309,6 @@ mod tests {
         let mixed = balance(&parse(&["H2O2", "MnO4^-", "H^+"]), &parse(&["O2", "Mn^2+", "H2O"]));
         assert_eq!(mixed, Err(BalanceError::NotUnique { dimension: 2 }));
         assert_eq!(balanced("ClO3^- + Cl^- -> ClO2 + Cl2", ACID), Err(BalanceError::NotUnique { dimension: 2 }));
-        assert!(matches!(balanced("Cu + H2O -> Cu^2+ + Cu2O", &["H^+"]), Err(_)));
+        assert!(balanced("Cu + H2O -> Cu^2+ + Cu2O", &["H^+"]).is_err());
     }
 }

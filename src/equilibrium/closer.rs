@@ -48,10 +48,10 @@ impl<'a, 'l> Closer<'a, 'l> {
         });
         for (constituent, _) in makeup {
             let surplus = by_element.remove(&constituent.element_name()).unwrap_or_default();
-            if surplus.abs() > 1e-9 {
-                if let Some((id, count)) = self.free_form(constituent) {
-                    add(&mut terms, id, -surplus / count);
-                }
+            if surplus.abs() > 1e-9
+                && let Some((id, count)) = self.free_form(constituent)
+            {
+                add(&mut terms, id, -surplus / count);
             }
         }
         self.solvent(terms)

@@ -168,3 +168,30 @@ pub fn in_liquor(liquor: &Liquor, constituent: &Constituent, assumed: f64) -> Op
         (a, b) => a.or(b).or_else(|| gaseous(liquor, constituent, 1.0)),
     }
 }
+
+/// Share of the leading form from which the plain ion is named instead: readers expect Cu²⁺ where it is of the same order as
+/// its complexes, and CuCl₂⁻ where it is not.
+const PLAIN_ENOUGH: f64 = 0.1;
+
+/// The species by which a state is called in equations: the plain ion where it matters, else the leading form.
+pub fn named_form(liquor: &Liquor, form: &StateForm) -> SpeciesId {
+    let Some(plain) = plain_ion(liquor, form) else { return form.leading };
+    let ln_amount = |id: SpeciesId| {
+        let species = liquor.library.get(id);
+        reach(liquor, species, &form.constituent).map(|(n, k)| k - liquor.ln_gamma(id) + n * form.potential)
+    };
+    match (ln_amount(plain), ln_amount(form.leading)) {
+        (Some(own), Some(leading)) if own - leading >= PLAIN_ENOUGH.ln() => plain,
+        _ => form.leading,
+    }
+}
+
+/// The plain ion by which the trade names a dissolved state (`Fe^3+`), when the library has one.
+pub fn plain_ion(liquor: &Liquor, form: &StateForm) -> Option<SpeciesId> {
+    if !matches!(form.basis, Basis::Liquor | Basis::Assumed(_)) {
+        return None;
+    }
+    let plain = |species: &&Species| species.constituents.len() == 1 && species.formula.composition.len() == 1;
+    let dissolved = liquor.library.holding(&form.constituent).filter(|s| s.state == State::Aqueous);
+    dissolved.filter(plain).map(|s| s.id).next()
+}

@@ -13,7 +13,7 @@ use super::{LibraryError, Species, SpeciesId, TemperatureModel};
 type Index = HashMap<(String, State), Vec<SpeciesId>>;
 
 /// Gases whose solubility the IAPWS guideline G7-04 carries over temperature.
-const SOLUBILITY_CURVES: [&str; 6] = ["H2", "O2", "N2", "CO2", "H2S", "CH4"];
+const SOLUBILITY_CURVES: [&str; 7] = ["H2", "O2", "N2", "CO", "CO2", "H2S", "CH4"];
 
 /// Parses all records and computes G° of those defined by an equilibrium.
 ///
@@ -142,10 +142,11 @@ fn model(
         let own = own_coefficient(&curve.reaction, &text, record.state);
         return Ok(TemperatureModel::MeasuredCurve { curve: curve.clone(), own, partners });
     }
-    if dissolved && SOLUBILITY_CURVES.contains(&text.as_str()) {
-        if let Some(gas) = index.get(&(text.clone(), State::Gas)).and_then(|ids| ids.first()) {
-            return Ok(TemperatureModel::GasSolubility { gas: *gas });
-        }
+    if dissolved
+        && SOLUBILITY_CURVES.contains(&text.as_str())
+        && let Some(gas) = index.get(&(text.clone(), State::Gas)).and_then(|ids| ids.first())
+    {
+        return Ok(TemperatureModel::GasSolubility { gas: *gas });
     }
     if has_entropy && dissolved && formula.charge != 0 {
         return Ok(TemperatureModel::CorrespondencePrinciple(

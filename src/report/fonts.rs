@@ -29,12 +29,6 @@ pub struct Face {
     glyphs: &'static [(char, u16, u16)],
 }
 
-/// Whether every face prints this character as itself, or as another that looks the same.
-pub fn covers(character: char) -> bool {
-    let printed = look_alike(character);
-    Style::ALL.iter().all(|&style| Face::of(style).glyph(printed).is_some())
-}
-
 /// The text as it is printed: look-alikes unified, characters without a glyph replaced by a question mark, and
 /// characters without a shape (soft hyphens, marks for break and direction, controls) left out.
 pub fn printable(text: &str) -> String {
@@ -136,6 +130,12 @@ fn has_no_shape(character: char) -> bool {
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    /// Whether every face prints this character as itself, or as another that looks the same.
+    fn covers(character: char) -> bool {
+        let printed = look_alike(character);
+        Style::ALL.iter().all(|&style| Face::of(style).glyph(printed).is_some())
+    }
 
     #[test]
     fn the_characters_of_chemistry_are_covered() {

@@ -78,9 +78,10 @@ impl Path {
     pub fn half(&self, liquor: &Liquor, solid: SpeciesId) -> Equation {
         let mut named = vec![(solid, -1.0)];
         for (form, count) in &self.products {
-            let species = liquor.library.get(form.leading);
+            let id = states::named_form(liquor, form);
+            let species = liquor.library.get(id);
             let held: f64 = species.constituents.iter().filter(|(c, _)| *c == form.constituent).map(|(_, n)| n).sum();
-            named.push((form.leading, count / held));
+            named.push((id, count / held));
         }
         Closer::new(liquor).close(&merged(named))
     }

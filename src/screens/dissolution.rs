@@ -141,7 +141,8 @@ impl<'a, 'l> Pairing<'a, 'l> {
         }
         let moved = |s: &super::Varied<'l>| s.force(solid, &driver.label, &path);
         let force = Estimate::new(base.value, setting.input_spread(base.standard_uncertainty, moved, base.value));
-        let asked_for = matches!(driver.origin, Origin::Named(_) | Origin::Measured | Origin::Acid);
+        let strongest = setting.drivers.iter().find(|d| d.held_back.is_none()).is_some_and(|d| d.label == driver.label);
+        let asked_for = strongest || matches!(driver.origin, Origin::Named(_) | Origin::Measured | Origin::Acid);
         if force.value < -NOT_WORTH_A_LINE && !asked_for {
             return None;
         }

@@ -161,9 +161,10 @@ fn driver<'l>(case: &Case<'l>, liquor: &Liquor<'l>, couple: Couple) -> Driver<'l
 /// The reduction of one atom of the couple's element, between the forms that lead in the liquor.
 pub fn half_reaction(liquor: &Liquor, couple: &Couple) -> Equation {
     let per_atom = |form: &StateForm| {
-        let species = liquor.library.get(form.leading);
+        let id = states::named_form(liquor, form);
+        let species = liquor.library.get(id);
         let count: f64 = species.constituents.iter().filter(|(c, _)| *c == form.constituent).map(|(_, n)| n).sum();
-        (form.leading, 1.0 / count)
+        (id, 1.0 / count)
     };
     let (oxidised, n) = per_atom(&couple.oxidised);
     let (reduced, m) = per_atom(&couple.reduced);
@@ -172,20 +173,7 @@ pub fn half_reaction(liquor: &Liquor, couple: &Couple) -> Equation {
 
 /// The plain ion by which the trade names a state (`Fe^3+` rather than the complex that leads), else the leading form.
 pub fn plain_form(liquor: &Liquor, form: &StateForm) -> SpeciesId {
-    if form.basis != Basis::Liquor && !matches!(form.basis, Basis::Assumed(_)) {
-        return form.leading;
-    }
-    let plain = |id: &SpeciesId| {
-        let species = liquor.library.get(*id);
-        species.constituents.len() == 1 && species.formula.composition.len() == 1
-    };
-    liquor
-        .library
-        .holding(&form.constituent)
-        .filter(|s| s.state == crate::library::record::State::Aqueous)
-        .map(|s| s.id)
-        .find(plain)
-        .unwrap_or(form.leading)
+    states::plain_ion(liquor, form).unwrap_or(form.leading)
 }
 
 /// Oxides put in as oxidants or present as minerals that can take electrons well above the hydrogen potential.

@@ -10,7 +10,6 @@ use crate::library::tables::InertRecord;
 use crate::quantity::{Estimate, FARADAY};
 use crate::thermo::equation::Equation;
 
-use super::drivers::plain_form;
 use super::finding::{Attention, Finding, Question, Verdict};
 use super::{Setting, text};
 
@@ -121,7 +120,7 @@ fn disproportionation<'l>(
     let share = n_down / (n_down + n_up);
     let held_back = couples::held_back(liquor, &down, None).or_else(|| couples::held_back(liquor, &up, None));
     let per_atom = |form: &StateForm| {
-        let id = display_form(liquor, form);
+        let id = forms::named_form(liquor, form);
         let species = liquor.library.get(id);
         let count: f64 = species.constituents.iter().filter(|(c, _)| *c == form.constituent).map(|(_, n)| n).sum();
         (id, 1.0 / count.max(1e-9))
@@ -131,18 +130,6 @@ fn disproportionation<'l>(
     let (high, h) = per_atom(upper);
     let equation = Closer::new(liquor).close(&[(from, -n), (low, l * (1.0 - share)), (high, h * share)]).whole();
     Disproportionation { lower: lower.clone(), upper: upper.clone(), driving_force, equation, held_back }
-}
-
-/// The form that a reader expects in the equation: the complex that leads, or the plain ion when that leads.
-fn display_form(liquor: &Liquor, form: &StateForm) -> crate::library::SpeciesId {
-    match form.basis {
-        Basis::Condensed | Basis::Gas(_) => form.leading,
-        _ => {
-            let plain = plain_form(liquor, form);
-            let alone = liquor.library.get(plain).constituents.len() == 1;
-            if alone && form.leading == plain { plain } else { form.leading }
-        }
-    }
 }
 
 /// One finding for each unstable state.
@@ -162,7 +149,7 @@ pub fn screen(setting: &Setting) -> Vec<Finding> {
 fn unstable(setting: &Setting, liquor: &Liquor, rung: &Rung, apart: &Disproportionation) -> Finding {
     let library = liquor.library;
     let verdict = Verdict::of(apart.driving_force);
-    let name = |f: &StateForm| library.get(display_form(liquor, f)).pretty();
+    let name = |f: &StateForm| library.get(forms::named_form(liquor, f)).pretty();
     let subject = rung.form.constituent.roman();
     let in_use = rung.form.basis == Basis::Liquor;
     let persists = apart.held_back.is_some();
