@@ -41,7 +41,8 @@ pub fn compose(subject: &Subject) -> Document {
 
 fn title_block(subject: &Subject) -> Block {
     let scenario = subject.scenario;
-    let count = |attention| subject.findings.iter().filter(|f| f.attention == attention).count();
+    let leading = sections::leading(subject.findings);
+    let count = |attention| leading.iter().filter(|f| f.attention == attention).count();
     let given = |value: &Option<String>| Text::from(value.clone().unwrap_or_else(|| "—".into()));
     Block::TitleBlock(vec![
         ("Reference".into(), given(&scenario.reference)),

@@ -78,7 +78,7 @@ fn pair(setting: &Setting, contact: &Contact, a: &Solid, b: &Solid) -> Finding {
             text::millivolts(gap)
         ),
     };
-    let against = format!("{} | {}", contact.name, cathode.name);
+    let against = format!("{} ({})", cathode.name, contact.name);
     let mut finding = Finding::new(Question::Contact, &anode.name, Some(&against), verdict, attention, statement);
     finding.driving_force = Some(gap);
     finding.quantities.extend(ratio.map(|r| ("cathode_to_anode_area".to_owned(), r)));
@@ -101,7 +101,7 @@ fn not_assessed(contact: &Contact, a: &Solid, b: &Solid) -> Finding {
         "Contact “{}” between {} and {} is not assessed: the library has no practical potential for one of them.",
         contact.name, a.name, b.name
     );
-    let against = format!("{} | {}", contact.name, b.name);
+    let against = format!("{} ({})", b.name, contact.name);
     let mut finding =
         Finding::new(Question::Contact, &a.name, Some(&against), Verdict::NotAssessed, Attention::Review, statement);
     finding.cautions.extend(["general".into(), "corrosion".into()]);

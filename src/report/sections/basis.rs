@@ -15,7 +15,10 @@ pub fn cautions(subject: &Subject) -> Vec<Block> {
     let called: BTreeSet<&str> =
         subject.findings.iter().flat_map(|f| f.cautions.iter().map(String::as_str)).chain(["general"]).collect();
     let mut blocks = vec![heading("Cautions")];
-    for (key, caution) in &subject.house.caution {
+    let general_first = |(key, _): &(&String, &crate::report::house::Caution)| key.as_str() != "general";
+    let mut known: Vec<_> = subject.house.caution.iter().collect();
+    known.sort_by_key(general_first);
+    for (key, caution) in known {
         if called.contains(key.as_str()) {
             blocks.push(Block::Notice {
                 tone: Tone::Plain,

@@ -150,13 +150,13 @@ fn couple_table(subject: &Subject) -> Block {
     let library = liquor.library;
     let rows = all_couples(liquor)
         .iter()
+        .filter(|couple| couple.oxidised.basis == Basis::Liquor)
         .take(MOST_COUPLES)
         .map(|couple| {
             let name = |form| library.get(plain_form(liquor, form)).formula.pretty();
             let basis = match (&couple.oxidised.basis, &couple.reduced.basis) {
                 (Basis::Liquor, Basis::Liquor) => "both sides in the liquor".to_owned(),
                 (_, Basis::Assumed(m)) => format!("reduced side taken at {}", scientific(*m)),
-                (Basis::Assumed(m), _) => format!("oxidised side taken at {}", scientific(*m)),
                 (_, Basis::Condensed) | (Basis::Condensed, _) => "solid side at activity 1".to_owned(),
                 _ => "gas side at 1 bar".to_owned(),
             };
@@ -164,14 +164,14 @@ fn couple_table(subject: &Subject) -> Block {
             Row::plain(vec![
                 format!("{}/{}", name(&couple.oxidised), name(&couple.reduced)).into(),
                 format!("{} V", number(couple.potential.value, 3)).into(),
-                format!("{:.0} mV", couple.potential.standard_uncertainty * 1e3).into(),
+                format!("{:.0} mV", (couple.potential.standard_uncertainty * 1e3).max(1.0)).into(),
                 basis.into(),
                 practice.into(),
             ])
         })
         .collect();
     Block::Table(Table {
-        caption: Some("Couples by potential against SHE, oxidation states as given".into()),
+        caption: Some("Couples whose oxidised side the liquor holds, by potential against SHE (the JSON report has all)".into()),
         columns: vec![
             Column::share("Couple", 1.0),
             Column::number("E"),

@@ -261,7 +261,9 @@ pub fn reasons(subject: &Subject) -> Vec<Block> {
     let mut blocks = vec![heading("Why: reasons and assumptions")];
     let before = blocks.len();
     for finding in super::answer::leading(subject.findings) {
-        if finding.reasons.is_empty() || finding.attention == Attention::Note {
+        // What breaks a film is told even where nothing here breaks it.
+        let part = finding.question == Question::Dissolution && finding.verdict == Verdict::Driven;
+        if finding.reasons.is_empty() || (finding.attention == Attention::Note && !part) {
             continue;
         }
         let head = match &finding.against {
