@@ -119,15 +119,18 @@ pub fn half_reaction(
     medium: Medium,
 ) -> Result<Balanced, BalanceError> {
     let ion = if medium == Medium::Acid { "H^+" } else { "OH^-" };
-    let mut helpers: Vec<Formula> = ["e^-", "H2O", ion].iter().filter_map(|t| Formula::parse(t).ok()).collect();
-    helpers.extend(spectators.iter().filter(|s| *s != oxidised && *s != reduced).cloned());
+    let parse = |texts: &[&str]| texts.iter().filter_map(|t| Formula::parse(t).ok()).collect::<Vec<_>>();
+    let mut helpers = parse(&["H2O", ion]);
+    helpers.extend(spectators.iter().cloned());
     helpers.retain(|h| h != oxidised && h != reduced);
-    let balanced = balance_with(std::slice::from_ref(oxidised), std::slice::from_ref(reduced), &helpers)?;
-    if balanced.electrons() > 0 {
-        Ok(balanced)
-    } else {
-        Err(BalanceError::NotReduction { oxidised: oxidised.canonical(), reduced: reduced.canonical() })
-    }
+    // The electron takes part by right: oxygen and water alone would otherwise balance to hydrogen peroxide.
+    let left: Vec<Formula> = std::iter::once(oxidised.clone()).chain(parse(&["e^-"])).collect();
+    balance_with(&left, std::slice::from_ref(reduced), &helpers).map_err(|error| match error {
+        BalanceError::WrongSide { formula } if formula == "e^-" => {
+            BalanceError::NotReduction { oxidised: oxidised.canonical(), reduced: reduced.canonical() }
+        }
+        other => other,
+    })
 }
 
 /// Subsets in order of size, each keeping the order of the helpers; helper lists are short.
@@ -293,6 +296,7 @@ mod tests {
             ("MnO4^-", "MnO2", vec![], Medium::Base, "MnO4^- + 3 e^- + 2 H2O = MnO2 + 4 OH^-"),
             ("Fe^3+", "Fe^2+", vec![], Medium::Acid, "Fe^3+ + e^- = Fe^2+"),
             ("O2", "H2O", vec![], Medium::Acid, "O2 + 4 e^- + 4 H^+ = 2 H2O"),
+            ("O2", "H2O2", vec![], Medium::Acid, "O2 + 2 e^- + 2 H^+ = H2O2"),
         ] {
             let pair = parse(&[oxidised, reduced]);
             let half = half_reaction(&pair[0], &pair[1], &parse(&ligands), medium).expect(oxidised);

@@ -116,7 +116,8 @@ pub fn held_back<'l>(liquor: &Liquor<'l>, couple: &Couple, against: Option<&str>
     library.kinetics.inert.iter().find(|record| {
         let escaped = record.temperature_above_c.is_some_and(|t| celsius > t)
             || record.ph_below.is_some_and(|ph| liquor.ph() < ph)
-            || record.ph_above.is_some_and(|ph| liquor.ph() > ph);
+            || record.ph_above.is_some_and(|ph| liquor.ph() > ph)
+            || record.unless_held.iter().any(|formula| holds(liquor, formula));
         let special = match against {
             Some(name) => record.against.is_empty() || record.against.iter().any(|a| a == name),
             None => record.against.is_empty(),
@@ -125,5 +126,14 @@ pub fn held_back<'l>(liquor: &Liquor<'l>, couple: &Couple, against: Option<&str>
             && special
             && holds_state(&record.oxidised, &couple.oxidised)
             && record.reduced.iter().any(|r| holds_state(r, &couple.reduced))
+    })
+}
+
+/// Whether the liquor holds what a formula brings, apart from the solvent's elements.
+fn holds(liquor: &Liquor, formula: &str) -> bool {
+    let records = liquor.library.records(formula);
+    records.iter().any(|s| {
+        let mut own = s.constituents.iter().filter(|(c, _)| !super::liquor::is_solvent(c)).peekable();
+        own.peek().is_some() && own.all(|(c, _)| liquor.total(c) > 0.0)
     })
 }

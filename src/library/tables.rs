@@ -115,6 +115,9 @@ pub struct InertRecord {
     #[serde(default)]
     pub against: Vec<String>,
     pub class: InertClass,
+    /// Species whose presence in the liquor lifts the record (a ligand that makes the couple work).
+    #[serde(default)]
+    pub unless_held: Vec<String>,
     pub practice: String,
     pub fast_when: String,
     #[serde(rename = "temperature_above_C", default)]

@@ -9,7 +9,7 @@ use crate::library::record::State;
 use crate::library::{Library, NotFound, Species, SpeciesId};
 use crate::quantity::{Estimate, FARADAY, Kelvin};
 
-use super::equation::Equation;
+use super::equation::{Equation, add};
 use super::gibbs::GibbsTable;
 use super::water::RangeError;
 
@@ -49,50 +49,55 @@ pub struct ReactionValues {
 /// [`NamedError`] names the species, the state or the element at fault.
 pub fn reaction(text: &str, library: &Library, medium: Medium) -> Result<Equation, NamedError> {
     let parsed = ReactionText::parse(text)?;
-    let mut places: BTreeMap<String, SpeciesId> = BTreeMap::new();
-    for term in parsed.left.iter().chain(&parsed.right).filter(|t| !t.formula.is_electron()) {
-        places.insert(term.formula.canonical(), find(term, library)?.id);
+    let terms: Vec<&Term> = parsed.left.iter().chain(&parsed.right).collect();
+    let places = terms.iter().map(|term| place(term, library)).collect::<Result<Vec<_>, _>>()?;
+    let coefficients = coefficients(text, &parsed, medium)?;
+    let mut equation = Equation { terms: Vec::new(), electrons: 0.0 };
+    for (i, (formula, n)) in coefficients.iter().enumerate() {
+        match places.get(i) {
+            _ if formula.is_electron() => equation.electrons += n,
+            Some(Some(id)) => add(&mut equation.terms, *id, *n),
+            _ => add(&mut equation.terms, library.find(&formula.canonical())?.id, *n),
+        }
     }
+    Ok(equation)
+}
+
+/// The species of a term; none for the electron.
+fn place(term: &Term, library: &Library) -> Result<Option<SpeciesId>, NamedError> {
+    if term.formula.is_electron() {
+        return Ok(None);
+    }
+    find(term, library).map(|species| Some(species.id))
+}
+
+/// Signed coefficients of the terms in their order, then of the helpers that closing took.
+fn coefficients(text: &str, parsed: &ReactionText, medium: Medium) -> Result<Vec<(Formula, f64)>, NamedError> {
     let side = |terms: &[Term]| terms.iter().map(|t| t.formula.clone()).collect::<Vec<_>>();
-    let ion = if medium == Medium::Acid { "H^+" } else { "OH^-" };
-    let written = |f: &Formula| parsed.left.iter().chain(&parsed.right).any(|t| t.formula == *f);
-    let helpers: Vec<Formula> =
-        ["H2O", ion, "e^-"].iter().filter_map(|h| Formula::parse(h).ok()).filter(|h| !written(h)).collect();
     let (left, right) = (side(&parsed.left), side(&parsed.right));
-    let fault = |source| NamedError::Balance { text: text.to_owned(), source };
-    let given: Option<Vec<f64>> = parsed.left.iter().chain(&parsed.right).map(|t| t.coefficient.map(ratio)).collect();
-    let equation_of = |coefficients: &[(Formula, f64)]| -> Result<Equation, NamedError> {
-        let mut equation = Equation { terms: Vec::new(), electrons: 0.0 };
-        for (formula, n) in coefficients {
-            if formula.is_electron() {
-                equation.electrons += n;
-            } else {
-                let id = match places.get(&formula.canonical()) {
-                    Some(id) => *id,
-                    None => library.find(&formula.canonical())?.id,
-                };
-                equation.terms.push((id, *n));
-            }
-        }
-        Ok(equation)
-    };
-    let balanced = chemistry::balance_with(&left, &right, &helpers);
-    match (balanced, given) {
-        // A reaction with several answers is taken as written when its own coefficients close it.
-        (Err(BalanceError::NotUnique { .. }), Some(given)) => {
-            let signed = left.iter().map(|_| -1.0).chain(right.iter().map(|_| 1.0)).zip(&given).map(|(s, n)| s * n);
-            let own: Vec<(Formula, f64)> = left.iter().chain(&right).cloned().zip(signed).collect();
-            if closes(&own) { equation_of(&own) } else { Err(fault(BalanceError::NotUnique { dimension: 2 })) }
-        }
-        (Ok(balanced), given) => {
+    let terms = || parsed.left.iter().chain(&parsed.right);
+    let ion = if medium == Medium::Acid { "H^+" } else { "OH^-" };
+    let helpers: Vec<Formula> = ["H2O", ion, "e^-"]
+        .iter()
+        .filter_map(|h| Formula::parse(h).ok())
+        .filter(|h| terms().all(|t| t.formula != *h))
+        .collect();
+    let given: Vec<f64> = terms().map(|t| t.coefficient.map_or(1.0, ratio)).collect();
+    let some_given = terms().any(|t| t.coefficient.is_some());
+    match chemistry::balance_with(&left, &right, &helpers) {
+        Ok(balanced) => {
             let plain: Vec<(Formula, f64)> =
                 balanced.coefficients.iter().map(|(f, n)| (f.clone(), *n as f64)).collect();
-            match given.filter(|g| g.iter().any(|n| *n != 1.0)) {
-                Some(given) => scaled_as_given(text, &plain, &given).and_then(|c| equation_of(&c)),
-                None => equation_of(&plain),
-            }
+            if some_given { scaled_as_given(text, &plain, &given, &balanced.to_string()) } else { Ok(plain) }
         }
-        (Err(error), _) => Err(fault(error)),
+        // A reaction with several answers is taken as written when its own coefficients close it.
+        Err(source) => {
+            let signs = left.iter().map(|_| -1.0).chain(right.iter().map(|_| 1.0));
+            let own: Vec<(Formula, f64)> =
+                left.iter().chain(&right).cloned().zip(signs.zip(&given).map(|(s, n)| s * n)).collect();
+            let several = matches!(source, BalanceError::NotUnique { .. });
+            if several && closes(&own) { Ok(own) } else { Err(NamedError::Balance { text: text.to_owned(), source }) }
+        }
     }
 }
 
@@ -101,14 +106,18 @@ fn ratio(count: chemistry::Count) -> f64 {
 }
 
 /// Scales the balanced reaction to the coefficients that the user wrote, which must be in the same proportions.
-fn scaled_as_given(text: &str, balanced: &[(Formula, f64)], given: &[f64]) -> Result<Vec<(Formula, f64)>, NamedError> {
+fn scaled_as_given(
+    text: &str,
+    balanced: &[(Formula, f64)],
+    given: &[f64],
+    words: &str,
+) -> Result<Vec<(Formula, f64)>, NamedError> {
     let factor = given[0] / balanced[0].1.abs();
     let same = given.iter().zip(balanced).all(|(g, (_, n))| (g - n.abs() * factor).abs() < 1e-9);
     if same {
         return Ok(balanced.iter().map(|(f, n)| (f.clone(), n * factor)).collect());
     }
-    let words: Vec<String> = balanced.iter().map(|(f, n)| format!("{n:+} {f}")).collect();
-    Err(NamedError::Coefficients { text: text.to_owned(), balanced: words.join(" ") })
+    Err(NamedError::Coefficients { text: text.to_owned(), balanced: words.to_owned() })
 }
 
 fn closes(terms: &[(Formula, f64)]) -> bool {

@@ -171,7 +171,9 @@ fn couple_table(subject: &Subject) -> Block {
         })
         .collect();
     Block::Table(Table {
-        caption: Some("Couples whose oxidised side the liquor holds, by potential against SHE (the JSON report has all)".into()),
+        caption: Some(
+            "Couples whose oxidised side the liquor holds, by potential against SHE (the JSON report has all)".into(),
+        ),
         columns: vec![
             Column::share("Couple", 1.0),
             Column::number("E"),
