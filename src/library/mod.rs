@@ -128,8 +128,9 @@ impl Library {
 
     /// All records of one formula, however it is written (`Fe³⁺`, `Fe^3+`).
     pub fn records(&self, formula: &str) -> Vec<&Species> {
-        let text = Formula::parse(formula).map_or_else(|_| formula.to_owned(), |f| f.canonical());
-        self.by_text.get(&text).into_iter().flatten().map(|id| self.get(*id)).collect()
+        let known = self.by_text.get(formula);
+        let rewritten = || Formula::parse(formula).ok().and_then(|f| self.by_text.get(&f.canonical()));
+        known.or_else(rewritten).into_iter().flatten().map(|id| self.get(*id)).collect()
     }
 
     /// The record of a formula in a given state.

@@ -5,6 +5,7 @@ use std::collections::BTreeMap;
 use serde::Serialize;
 
 use crate::equilibrium::Liquor;
+use crate::library::SpeciesId;
 use crate::quantity::Estimate;
 use crate::thermo::equation::Equation;
 
@@ -114,6 +115,8 @@ pub struct Finding {
     pub delta_g: Option<f64>,
     /// Of the reaction as written, at the liquor's temperature.
     pub log_k: Option<f64>,
+    /// Species of the reaction.
+    pub species: Vec<SpeciesId>,
     /// ASCII equation.
     pub reaction: Option<String>,
     /// The same with sub- and superscripts.
@@ -157,6 +160,7 @@ impl Finding {
             driving_force: None,
             delta_g: None,
             log_k: None,
+            species: Vec::new(),
             reaction: None,
             reaction_pretty: None,
             products: Vec::new(),
@@ -173,6 +177,7 @@ impl Finding {
         if equation.electrons == 0.0 {
             self.log_k = Some(equation.log_k(&liquor.gibbs, library).value);
         }
+        self.species = equation.terms.iter().map(|(id, _)| *id).collect();
         self.reaction = Some(equation.ascii(library));
         self.reaction_pretty = Some(equation.pretty(library));
         self.sources.extend(equation.terms.iter().map(|(id, _)| library.get(*id).source.clone()));

@@ -179,11 +179,8 @@ fn unstable(setting: &Setting, liquor: &Liquor, rung: &Rung, apart: &Disproporti
     };
     let mut finding = Finding::new(Question::State, &subject, None, verdict, attention, statement);
     finding.driving_force = Some(apart.driving_force);
-    finding.log_k = Some(apart.equation.log_k(&liquor.gibbs, liquor.library).value);
-    finding.reaction = Some(apart.equation.ascii(library));
-    finding.reaction_pretty = Some(apart.equation.pretty(library));
+    finding.take_equation(&apart.equation, liquor);
     finding.products = [&apart.lower, &apart.upper].iter().map(|f| library.get(f.leading).label()).collect();
-    finding.sources = apart.equation.terms.iter().map(|(id, _)| library.get(*id).source.clone()).collect();
     if let Some(record) = apart.held_back {
         finding.reasons.push(format!("Practice: {}", text::sentence(&record.practice)));
         finding.sources.push(record.source.clone());

@@ -4,7 +4,7 @@ use std::collections::BTreeSet;
 
 use super::results::number;
 use crate::library::record::Status;
-use crate::library::{Species, TemperatureModel};
+use crate::library::{Species, SpeciesId, TemperatureModel};
 use crate::report::Subject;
 use crate::report::compose::heading;
 use crate::report::document::{Block, Column, Row, Table, Text, Tone};
@@ -45,17 +45,11 @@ pub fn method(subject: &Subject) -> Vec<Block> {
 pub fn data(subject: &Subject) -> Vec<Block> {
     let liquor = &subject.setting.liquor;
     let library = liquor.library;
-    let mut used: Vec<&Species> = Vec::new();
-    let present = liquor.dissolved.iter().filter(|d| d.molality > 1e-6).map(|d| library.get(d.species));
-    let named = subject.findings.iter().filter(|f| f.verdict != Verdict::Opposed).flat_map(|f| {
-        let reaction = f.reaction.as_deref().unwrap_or("");
-        library.species().iter().filter(move |s| reaction.split(' ').any(|word| word == s.label()))
-    });
-    for species in present.chain(named) {
-        if !used.iter().any(|s| s.id == species.id) {
-            used.push(species);
-        }
-    }
+    let present = liquor.dissolved.iter().filter(|d| d.molality > 1e-6).map(|d| d.species);
+    let named =
+        subject.findings.iter().filter(|f| f.verdict != Verdict::Opposed).flat_map(|f| f.species.iter().copied());
+    let ids: BTreeSet<SpeciesId> = present.chain(named).collect();
+    let mut used: Vec<&Species> = ids.into_iter().map(|id| library.get(id)).collect();
     used.sort_by(|a, b| a.text.cmp(&b.text).then(a.state.cmp(&b.state)));
     let rows = used.iter().map(|s| row(s, liquor)).collect();
     let mut blocks = vec![
