@@ -3,9 +3,10 @@
 //! The way through, in order: [`scenario`] reads the file; [`library`] holds the records of `materials/`; [`case`] finds
 //! the scenario's names in the library; [`chemistry`] knows formulae and balancing, [`thermo`] carries Gibbs energies over
 //! temperature and activity; [`equilibrium`] computes the liquor; [`screens`] ask one question each and give findings;
-//! [`report`] makes one document of them and writes it as PDF, JSON or terminal text; [`cli`] is the only place that reads
+//! [`audit`] holds the library against itself and published values; [`report`] makes one document of them and writes it as PDF, JSON or terminal text; [`cli`] is the only place that reads
 //! arguments, opens files and prints. Arrows point one way: a later stage never reaches back.
 
+pub mod audit;
 pub mod case;
 pub mod chemistry;
 pub mod cli;

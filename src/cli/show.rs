@@ -2,40 +2,81 @@
 
 use std::process::ExitCode;
 
-use clap::Args;
+use clap::{Args, ValueEnum};
 use serde_json::{Value, json};
 
+use super::AtTemperature;
 use super::output::{self, Failure};
+use crate::chemistry::Element;
 use crate::library::record::{State, Status};
-use crate::library::{Library, Species};
+use crate::library::{self, Library, Species};
+use crate::quantity::T_STANDARD;
+use crate::scenario;
+use crate::thermo::gibbs::GibbsTable;
 
 #[derive(Debug, Args)]
 pub struct Show {
-    /// A formula (`Cu^2+`), a mineral, an alloy (`UNS S31603`), a gas, or part of a name
-    query: String,
+    /// A formula (`Cu^2+`), a mineral, alloy (`UNS S31603`), reagent, lining, gas, CAS number, or part of a name
+    query: Option<String>,
+    /// Only records that hold this element
+    #[arg(long, value_name = "SYMBOL")]
+    element: Option<String>,
+    /// Only records in this state
+    #[arg(long, value_name = "STATE")]
+    state: Option<StateFilter>,
+    #[command(flatten)]
+    at: AtTemperature,
     /// Print the records as JSON
     #[arg(long)]
     json: bool,
 }
 
-pub fn run(args: &Show, library: &Library) -> Result<ExitCode, Failure> {
-    let query = args.query.trim();
-    let species = species(query, library);
-    let alloy = library.alloy(query).map(|a| json!(a));
-    let gas = library.gases.iter().find(|g| g.formula == query || g.name.eq_ignore_ascii_case(query)).map(|g| json!(g));
-    let mineral = library.mineral(query).map(|m| json!(m));
-    let others: Vec<(&str, Value)> = [("mineral", mineral), ("alloy", alloy), ("gas", gas)]
-        .into_iter()
-        .filter_map(|(k, v)| v.map(|v| (k, v)))
-        .collect();
-    if species.is_empty() && others.is_empty() {
-        return Err(Failure::input(match library.find(query) {
-            Err(e) => e.to_string(),
-            Ok(_) => format!("`{query}` is not in the library"),
-        }));
+#[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
+enum StateFilter {
+    Dissolved,
+    Solid,
+    Liquid,
+    Gas,
+}
+
+impl StateFilter {
+    fn holds(self, state: State) -> bool {
+        match self {
+            Self::Dissolved => state == State::Aqueous,
+            Self::Solid => matches!(state, State::Crystal | State::Amorphous),
+            Self::Liquid => state == State::Liquid,
+            Self::Gas => state == State::Gas,
+        }
     }
+}
+
+pub fn run(args: &Show, library: &Library) -> Result<ExitCode, Failure> {
+    let t = scenario::temperature(&args.at.temperature).map_err(Failure::input)?;
+    let element = match &args.element {
+        Some(symbol) => Some(
+            Element::from_symbol(symbol.trim())
+                .ok_or_else(|| Failure::input(format!("`{symbol}` is not the symbol of an element")))?,
+        ),
+        None => None,
+    };
+    if args.query.is_none() && element.is_none() {
+        return Err(Failure::input("name a record, or an element with --element"));
+    }
+    let wanted = |s: &&Species| {
+        element.is_none_or(|e| s.formula.composition.contains_key(&e)) && args.state.is_none_or(|f| f.holds(s.state))
+    };
+    let query = args.query.as_deref().map(str::trim);
+    let found: Vec<&Species> = match query {
+        Some(query) => species(query, library).into_iter().filter(wanted).collect(),
+        None => library.species().iter().filter(wanted).collect(),
+    };
+    let others = query.map(|q| other_records(q, library)).unwrap_or_default();
+    if found.is_empty() && others.is_empty() {
+        return Err(Failure::input(nothing(query.unwrap_or(""), library)));
+    }
+    let table = GibbsTable::at(library, t).map_err(Failure::input)?;
     if args.json {
-        let mut value = json!({ "records": species.iter().map(|s| record(s, library)).collect::<Vec<_>>() });
+        let mut value = json!({ "records": found.iter().map(|s| record(s, library, &table)).collect::<Vec<_>>() });
         for (key, other) in others {
             value[key] = other;
         }
@@ -45,16 +86,39 @@ pub fn run(args: &Show, library: &Library) -> Result<ExitCode, Failure> {
     let mut out = String::new();
     for (key, other) in &others {
         out.push_str(&format!("{key}\n"));
-        for (field, value) in other.as_object().into_iter().flatten().filter(|(_, v)| !v.is_null()) {
+        for (field, value) in other.as_object().into_iter().flatten().filter(|(_, v)| !is_empty(v)) {
             let text = value.as_str().map_or_else(|| value.to_string(), str::to_owned);
             out.push_str(&format!("  {field:<34}{text}\n"));
         }
     }
-    for one in species {
-        out.push_str(&plain(one, library));
+    match found.as_slice() {
+        few if few.len() <= 4 => few.iter().for_each(|s| out.push_str(&plain(s, library, &table))),
+        many => out.push_str(&listing(many, &table)),
     }
     output::print(&out)?;
     Ok(ExitCode::SUCCESS)
+}
+
+fn is_empty(value: &Value) -> bool {
+    value.is_null() || value.as_array().is_some_and(Vec::is_empty) || value.as_object().is_some_and(|o| o.is_empty())
+}
+
+/// Records of the other tables that a name, synonym, number or CAS number finds.
+fn other_records(query: &str, library: &Library) -> Vec<(&'static str, Value)> {
+    let same = |text: &str| text.eq_ignore_ascii_case(query);
+    let gas = library.gases.iter().find(|g| g.formula == query || same(&g.name) || g.cas == query).map(|g| json!(g));
+    let reagent = library
+        .reagents
+        .iter()
+        .find(|r| same(&r.name) || r.synonyms.iter().any(|s| same(s)) || r.cas.as_deref() == Some(query))
+        .map(|r| json!(r));
+    let lining = library.linings.iter().find(|l| same(&l.name) || l.synonyms.iter().any(|s| same(s))).map(|l| json!(l));
+    let mineral = library.mineral(query).map(|m| json!(m));
+    let alloy = library.alloy(query).map(|a| json!(a));
+    [("mineral", mineral), ("alloy", alloy), ("reagent", reagent), ("lining", lining), ("gas", gas)]
+        .into_iter()
+        .filter_map(|(k, v)| v.map(|v| (k, v)))
+        .collect()
 }
 
 /// Records of a formula; of a mineral by name; else those whose name contains the query.
@@ -64,13 +128,32 @@ fn species<'l>(query: &str, library: &'l Library) -> Vec<&'l Species> {
         return direct;
     }
     if let Some(mineral) = library.mineral(query) {
-        return library.records(&mineral.formula);
+        let same = |s: &&Species| mineral.form.is_none() || s.form == mineral.form;
+        return library.records(&mineral.formula).into_iter().filter(same).collect();
     }
     let wanted = query.to_lowercase();
-    if wanted.len() < 3 {
+    if wanted.chars().count() < 3 {
         return Vec::new();
     }
-    library.species().iter().filter(|s| s.name.to_lowercase().contains(&wanted)).collect()
+    let holds = |text: &str| text.to_lowercase().contains(&wanted);
+    library.species().iter().filter(|s| holds(&s.name) || s.form.as_deref().is_some_and(holds)).collect()
+}
+
+/// The message when nothing is found, with the nearest names of all tables.
+fn nothing(query: &str, library: &Library) -> String {
+    let words = library
+        .species()
+        .iter()
+        .flat_map(|s| [s.text.as_str(), s.name.as_str()])
+        .chain(library.minerals.iter().map(|m| m.name.as_str()))
+        .chain(library.alloys.iter().flat_map(|a| a.uns.as_deref()))
+        .chain(library.alloys.iter().map(|a| a.name.as_str()))
+        .chain(library.reagents.iter().map(|r| r.name.as_str()))
+        .chain(library.linings.iter().map(|l| l.name.as_str()))
+        .chain(library.gases.iter().map(|g| g.name.as_str()));
+    let nearest = library::nearest(query, words, 5);
+    let hint = if nearest.is_empty() { String::new() } else { format!("; nearest: {}", nearest.join(", ")) };
+    format!("nothing in the library answers to `{query}`{hint}")
 }
 
 fn state_name(state: State) -> &'static str {
@@ -91,7 +174,7 @@ fn status_name(status: Status) -> &'static str {
     }
 }
 
-fn record(s: &Species, library: &Library) -> Value {
+fn record(s: &Species, library: &Library, table: &GibbsTable) -> Value {
     json!({
         "formula": s.text,
         "state": state_name(s.state),
@@ -101,6 +184,9 @@ fn record(s: &Species, library: &Library) -> Value {
         "uncertainty_kJ_mol": s.gibbs.standard_uncertainty * 1e-3,
         "H_kJ_mol": s.enthalpy.map(|h| h.value * 1e-3),
         "S_J_mol_K": s.entropy.map(|e| e.value),
+        "temperature_K": table.temperature.0,
+        "G_at_temperature_kJ_mol": table.of(s.id).value * 1e-3,
+        "G_at_temperature_uncertainty_kJ_mol": table.of(s.id).standard_uncertainty * 1e-3,
         "temperature_model": s.temperature.name(),
         "constituents": s.constituents.iter().map(|(c, n)| json!({ "of": c.to_string(), "count": n })).collect::<Vec<_>>(),
         "source": s.source,
@@ -110,13 +196,35 @@ fn record(s: &Species, library: &Library) -> Value {
     })
 }
 
-fn plain(s: &Species, library: &Library) -> String {
+/// One line a record.
+fn listing(many: &[&Species], table: &GibbsTable) -> String {
+    let mut out = format!(
+        "{:<34}{:<6}{:>12}{:>9}{:>12}  {:<18}{}\n",
+        "species", "state", "ΔfG°, kJ", "u", "G at T", "source", "name"
+    );
+    for s in many {
+        out.push_str(&format!(
+            "{:<34}{:<6}{:>12.2}{:>9.2}{:>12.2}  {:<18}{}\n",
+            s.label(),
+            state_name(s.state),
+            s.gibbs.value * 1e-3,
+            s.gibbs.standard_uncertainty * 1e-3,
+            table.of(s.id).value * 1e-3,
+            s.source,
+            s.name
+        ));
+    }
+    out
+}
+
+fn plain(s: &Species, library: &Library, table: &GibbsTable) -> String {
     let mut out = format!("{}  {} ({})\n", s.label(), s.name, state_name(s.state));
-    out.push_str(&format!(
-        "  ΔfG°  {:>10.2} ± {:.2} kJ/mol\n",
-        s.gibbs.value * 1e-3,
-        s.gibbs.standard_uncertainty * 1e-3
-    ));
+    let kilojoules =
+        |e: crate::quantity::Estimate| format!("{:>10.2} ± {:.2}", e.value * 1e-3, e.standard_uncertainty * 1e-3);
+    out.push_str(&format!("  ΔfG°  {} kJ/mol at 25 °C\n", kilojoules(s.gibbs)));
+    if table.temperature != T_STANDARD {
+        out.push_str(&format!("  G     {} kJ/mol at {} (apparent)\n", kilojoules(table.of(s.id)), table.temperature));
+    }
     if let Some(h) = s.enthalpy {
         out.push_str(&format!("  ΔfH°  {:>10.2} kJ/mol\n", h.value * 1e-3));
     }

@@ -1,5 +1,7 @@
 //! Packs `materials/*.toml` into one postcard file at build time (the build script includes this module).
 
+#[path = "checks.rs"]
+mod checks;
 #[path = "record.rs"]
 mod record;
 #[path = "tables.rs"]
@@ -9,6 +11,7 @@ use std::collections::BTreeMap;
 use std::fs;
 use std::path::{Path, PathBuf};
 
+use checks::Checks;
 use serde::de::DeserializeOwned;
 use tables::Materials;
 
@@ -25,11 +28,26 @@ pub fn pack(materials: &Path, out: &Path) -> Result<(), String> {
     all.alloys = list(&materials.join("alloys.toml"), "alloy")?;
     all.minerals = list(&materials.join("minerals.toml"), "mineral")?;
     all.electrodes = list(&materials.join("electrodes.toml"), "electrode")?;
+    all.reagents = list(&materials.join("reagents.toml"), "reagent")?;
+    all.linings = list(&materials.join("linings.toml"), "lining")?;
+    all.electrode_kinetics = read(&materials.join("electrode_kinetics.toml"))?;
     all.kinetics = read(&materials.join("kinetics.toml"))?;
     all.activity = read(&materials.join("activity.toml"))?;
     all.sources = read(&materials.join("sources.toml"))?;
-    let bytes = postcard::to_stdvec(&all).map_err(|e| format!("packing materials: {e}"))?;
-    fs::write(out.join("materials.bin"), bytes).map_err(|e| format!("writing materials.bin: {e}"))
+    write(&all, &out.join("materials.bin"))?;
+    let checks = materials.join("checks");
+    let published = Checks {
+        potentials: list(&checks.join("potentials.toml"), "check")?,
+        constants: list(&checks.join("constants.toml"), "check")?,
+        ions: list(&checks.join("ions.toml"), "check")?,
+        heat: list(&checks.join("heat.toml"), "check")?,
+    };
+    write(&published, &out.join("checks.bin"))
+}
+
+fn write<T: serde::Serialize>(value: &T, path: &Path) -> Result<(), String> {
+    let bytes = postcard::to_stdvec(value).map_err(|e| format!("packing {}: {e}", path.display()))?;
+    fs::write(path, bytes).map_err(|e| format!("writing {}: {e}", path.display()))
 }
 
 fn toml_files(folder: &Path) -> Result<Vec<PathBuf>, String> {

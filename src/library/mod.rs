@@ -2,6 +2,8 @@
 //!
 //! Loaded once from the bytes that the build script packed, then passed by reference. It knows nothing of scenarios.
 
+pub mod checks;
+mod overlay;
 pub mod record;
 mod resolve;
 mod species;
@@ -12,11 +14,18 @@ use std::collections::{BTreeMap, HashMap};
 use thiserror::Error;
 
 use crate::chemistry::{Constituent, Formula};
+use checks::Checks;
+pub use overlay::{Change, Overlay};
+use record::SpeciesRecord;
 use record::State;
 pub use species::{Species, SpeciesId, TemperatureModel};
-use tables::{ActivityTables, AlloyRecord, ElectrodeRecord, GasRecord, Kinetics, Materials, MineralRecord};
+use tables::{
+    ActivityTables, AlloyRecord, ElectrodeKinetics, ElectrodeRecord, GasRecord, Kinetics, LiningRecord, Materials,
+    MineralRecord, ReagentRecord,
+};
 
 const PACKED: &[u8] = include_bytes!(concat!(env!("OUT_DIR"), "/materials.bin"));
+const PACKED_CHECKS: &[u8] = include_bytes!(concat!(env!("OUT_DIR"), "/checks.bin"));
 
 /// What can be wrong with the records.
 #[derive(Debug, Error)]
@@ -49,14 +58,21 @@ pub struct Library {
     by_constituent: HashMap<Constituent, Vec<SpeciesId>>,
     /// Order in which G°(T) can be computed, partners first.
     evaluation_order: Vec<SpeciesId>,
+    /// The records as written, in the order of [`Library::species`].
+    pub records: Vec<SpeciesRecord>,
     pub gases: Vec<GasRecord>,
     pub alloys: Vec<AlloyRecord>,
     pub minerals: Vec<MineralRecord>,
+    pub reagents: Vec<ReagentRecord>,
+    pub linings: Vec<LiningRecord>,
     pub kinetics: Kinetics,
+    pub electrode_kinetics: ElectrodeKinetics,
     pub electrodes: Vec<ElectrodeRecord>,
     pub activity: ActivityTables,
     /// Source key → full citation.
     pub sources: BTreeMap<String, String>,
+    /// What the user's own files added or overrode.
+    pub changes: Vec<Change>,
 }
 
 impl Library {
@@ -65,8 +81,27 @@ impl Library {
     /// # Errors
     /// [`LibraryError`] names the record that does not hold together.
     pub fn embedded() -> Result<Self, LibraryError> {
-        let materials: Materials = postcard::from_bytes(PACKED).map_err(|e| LibraryError::Packed(e.to_string()))?;
-        Self::from_materials(materials)
+        Self::with_overlays(&[])
+    }
+
+    /// The embedded library with the user's own files laid over it, in their order.
+    ///
+    /// # Errors
+    /// [`LibraryError`] names the record that does not hold together.
+    pub fn with_overlays(overlays: &[Overlay]) -> Result<Self, LibraryError> {
+        let mut materials: Materials = postcard::from_bytes(PACKED).map_err(|e| LibraryError::Packed(e.to_string()))?;
+        let changes = overlays.iter().flat_map(|o| o.lay_over(&mut materials)).collect();
+        let mut library = Self::from_materials(materials)?;
+        library.changes = changes;
+        Ok(library)
+    }
+
+    /// The published values that the audit holds the library against.
+    ///
+    /// # Errors
+    /// [`LibraryError::Packed`] when the embedded tables cannot be read.
+    pub fn checks() -> Result<Checks, LibraryError> {
+        postcard::from_bytes(PACKED_CHECKS).map_err(|e| LibraryError::Packed(e.to_string()))
     }
 
     /// Builds the library from records.
@@ -88,13 +123,18 @@ impl Library {
             by_text,
             by_constituent,
             evaluation_order,
+            records: materials.species,
             gases: materials.gases,
             alloys: materials.alloys,
             minerals: materials.minerals,
+            reagents: materials.reagents,
+            linings: materials.linings,
             kinetics: materials.kinetics,
+            electrode_kinetics: materials.electrode_kinetics,
             electrodes: materials.electrodes,
             activity: materials.activity,
             sources: materials.sources,
+            changes: Vec::new(),
         })
     }
 

@@ -167,6 +167,9 @@ pub struct SpeciesRecord {
     pub status: Status,
     #[serde(default)]
     pub note: Option<String>,
+    /// Why a rule of the audit does not hold for this record, on purpose.
+    #[serde(default)]
+    pub explained: Option<String>,
     #[serde(default)]
     pub rejected: Vec<Rejected>,
 }

@@ -14,6 +14,9 @@ pub struct Limit {
     pub value: f64,
     /// Who set it and over what time: `NIOSH ceiling, 15 min`.
     pub kind: String,
+    /// The same limit as the source prints it by mass, mg/m³ at 25 °C and 1 atm.
+    #[serde(default)]
+    pub mg_m3: Option<f64>,
 }
 
 /// A gas with its public exposure and flammability limits: `[[gas]]` in `gases.toml`.
@@ -100,8 +103,118 @@ pub struct MineralRecord {
     pub form: Option<String>,
     #[serde(rename = "density_g_cm3", default)]
     pub density_g_cm3: Option<f64>,
+    /// Where a leach meets it.
+    #[serde(default)]
+    pub occurrence: Option<String>,
+    /// Films and slowness that practice knows.
+    #[serde(default)]
+    pub passivation: Option<String>,
     #[serde(default)]
     pub note: Option<String>,
+}
+
+/// A named reagent and what it delivers in water: `[[reagent]]` in `reagents.toml`.
+#[derive(Debug, Clone, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct ReagentRecord {
+    pub name: String,
+    #[serde(default)]
+    pub synonyms: Vec<String>,
+    #[serde(default)]
+    pub cas: Option<String>,
+    /// Moles of library species per mole of the pure reagent.
+    pub delivers: BTreeMap<String, f64>,
+    /// g/mol of the pure reagent.
+    pub molar_mass_g_mol: f64,
+    /// Usual commercial strengths, % by mass.
+    #[serde(default)]
+    pub strengths_percent: Vec<f64>,
+    /// kg/m³ at the first strength.
+    #[serde(default)]
+    pub density_kg_m3: Option<f64>,
+    #[serde(default)]
+    pub hazard: Vec<String>,
+    #[serde(default)]
+    pub note: Option<String>,
+    pub source: String,
+    pub status: Status,
+}
+
+/// What attacks a lining.
+#[derive(Debug, Clone, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct LiningAttack {
+    pub what: String,
+    #[serde(default)]
+    pub species: Option<String>,
+    #[serde(default)]
+    pub above_mol_kg: Option<f64>,
+    #[serde(rename = "temperature_above_C", default)]
+    pub temperature_above_c: Option<f64>,
+    #[serde(rename = "pH_below", default)]
+    pub ph_below: Option<f64>,
+    #[serde(rename = "pH_above", default)]
+    pub ph_above: Option<f64>,
+    pub text: String,
+}
+
+/// A lining or non-metal construction material: `[[lining]]` in `linings.toml`.
+#[derive(Debug, Clone, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct LiningRecord {
+    pub name: String,
+    #[serde(default)]
+    pub synonyms: Vec<String>,
+    /// Usual upper service temperature in mild aqueous duty, °C.
+    #[serde(rename = "temperature_limit_C")]
+    pub temperature_limit_c: f64,
+    pub suited_to: String,
+    #[serde(default)]
+    pub attacked_by: Vec<LiningAttack>,
+    #[serde(default)]
+    pub note: Option<String>,
+    pub source: String,
+    pub status: Status,
+}
+
+/// Exchange current density: `[[exchange_current]]` in `electrode_kinetics.toml`.
+#[derive(Debug, Clone, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct ExchangeCurrent {
+    pub reaction: String,
+    pub surface: String,
+    #[serde(default)]
+    pub medium: Option<String>,
+    #[serde(rename = "log10_i0_A_cm2")]
+    pub log10_i0_a_cm2: f64,
+    #[serde(default)]
+    pub tafel_mv_per_decade: Option<f64>,
+    pub source: String,
+    pub status: Status,
+    #[serde(default)]
+    pub note: Option<String>,
+}
+
+/// Diffusion coefficient at 25 °C: `[[diffusion]]` in `electrode_kinetics.toml`.
+#[derive(Debug, Clone, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct DiffusionRecord {
+    pub species: String,
+    #[serde(rename = "D_m2_s")]
+    pub d_m2_s: f64,
+    pub source: String,
+    pub status: Status,
+    #[serde(default)]
+    pub note: Option<String>,
+}
+
+#[derive(Debug, Default, Clone, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct ElectrodeKinetics {
+    #[serde(default)]
+    pub exchange_current: Vec<ExchangeCurrent>,
+    #[serde(default)]
+    pub diffusion: Vec<DiffusionRecord>,
 }
 
 /// A couple that practice knows as inert or slow: `[[inert]]` in `kinetics.toml`.
@@ -304,7 +417,10 @@ pub struct Materials {
     pub gases: Vec<GasRecord>,
     pub alloys: Vec<AlloyRecord>,
     pub minerals: Vec<MineralRecord>,
+    pub reagents: Vec<ReagentRecord>,
+    pub linings: Vec<LiningRecord>,
     pub kinetics: Kinetics,
+    pub electrode_kinetics: ElectrodeKinetics,
     pub electrodes: Vec<ElectrodeRecord>,
     pub activity: ActivityTables,
     /// Source key → full citation.

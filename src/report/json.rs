@@ -23,6 +23,9 @@ pub fn report(subject: &Subject) -> Value {
             "name": env!("CARGO_PKG_NAME"),
             "version": env!("CARGO_PKG_VERSION"),
             "library_sha256": Library::sha256(),
+            "overlays": subject.setting.liquor.library.changes.iter().map(|c| json!({
+                "file": c.file, "record": c.record, "overrides": c.overrides,
+            })).collect::<Vec<_>>(),
         },
         "scenario": {
             "title": scenario.title,

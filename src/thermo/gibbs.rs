@@ -2,8 +2,7 @@
 
 use std::collections::BTreeMap;
 
-use crate::library::record::HeatCapacity;
-use crate::library::record::Transition;
+use crate::library::record::{Curve, HeatCapacity, Transition};
 use crate::library::{Library, Species, SpeciesId, TemperatureModel};
 use crate::quantity::{Estimate, Kelvin, T_STANDARD};
 
@@ -94,19 +93,13 @@ fn change(species: &Species, library: &Library, values: &[Estimate], t: Kelvin) 
         TemperatureModel::EntropyOnly => -entropy * (t.0 - t0),
         TemperatureModel::ConstantGibbs => 0.0,
         TemperatureModel::GasSolubility { gas } => {
-            // The guideline starts a few kelvin above freezing (and ends at 260 °C for H2S): beyond, its last value is held.
-            let (from, to) = henry::range(&species.text)?;
-            let held = |t: Kelvin| Kelvin(t.0.clamp(from.0, to.0));
-            let dissolution = |t: Kelvin| henry::ln_solubility_molality(&species.text, held(t)).map(|ln| -t.rt() * ln);
+            let dissolution = |t: Kelvin| ln_solubility(&species.text, t).map(|ln| -t.rt() * ln);
             let gas_change = values[gas.index()].value - library.get(*gas).gibbs.value;
             gas_change + dissolution(t)? - dissolution(T_STANDARD)?
         }
         TemperatureModel::MeasuredCurve { curve, own, partners } => {
-            let log_k = |t: f64| curve.a + curve.b / t + curve.c * t.ln() + curve.d * t + curve.e * t * t;
-            let energy = |t: Kelvin, k: f64| -t.rt() * std::f64::consts::LN_10 * k / own;
-            // Beyond the range of the fit its last log K is held; the uncertainty grows with the distance.
-            let inside = t.0.clamp(curve.from_k, curve.to_k);
-            partner_change(partners, library, values) + energy(t, log_k(inside)) - energy(T_STANDARD, log_k(t0))
+            let energy = |t: Kelvin| -t.rt() * std::f64::consts::LN_10 * curve_log_k(curve, t) / own;
+            partner_change(partners, library, values) + energy(t) - energy(T_STANDARD)
         }
         TemperatureModel::ReactionEnthalpy { joules_per_mole, partners } => {
             let reaction = species.gibbs.value - partner_sum(partners, library);
@@ -120,12 +113,46 @@ fn change(species: &Species, library: &Library, values: &[Estimate], t: Kelvin) 
     })
 }
 
+/// ln of a gas's solubility, mol/(kg bar). The guideline starts a few kelvin above freezing and ends at 260 °C for H2S: beyond,
+/// it goes on with the enthalpy that it has at its end.
+fn ln_solubility(gas: &str, t: Kelvin) -> Result<f64, RangeError> {
+    let (from, to) = henry::range(gas)?;
+    let end = Kelvin(t.0.clamp(from.0, to.0));
+    let at_end = henry::ln_solubility_molality(gas, end)?;
+    if end == t {
+        return Ok(at_end);
+    }
+    let inside = Kelvin(if t.0 < from.0 { from.0 + 1.0 } else { to.0 - 1.0 });
+    let slope = (henry::ln_solubility_molality(gas, inside)? - at_end) / (1.0 / inside.0 - 1.0 / end.0);
+    Ok(at_end + slope * (1.0 / t.0 - 1.0 / end.0))
+}
+
+/// log₁₀ K of a measured curve; beyond its range it goes on with the enthalpy that it has at its end (van 't Hoff), and its
+/// uncertainty grows with the distance.
+fn curve_log_k(curve: &Curve, t: Kelvin) -> f64 {
+    let fit = |t: f64| curve.a + curve.b / t + curve.c * t.ln() + curve.d * t + curve.e * t * t;
+    let end = t.0.clamp(curve.from_k, curve.to_k);
+    let per_reciprocal = curve.b - curve.c * end - curve.d * end * end - 2.0 * curve.e * end.powi(3);
+    fit(end) + per_reciprocal * (1.0 / t.0 - 1.0 / end)
+}
+
 fn partner_sum(partners: &[(SpeciesId, f64)], library: &Library) -> f64 {
     partners.iter().map(|(id, count)| count * library.get(*id).gibbs.value).sum()
 }
 
 fn partner_change(partners: &[(SpeciesId, f64)], library: &Library, values: &[Estimate]) -> f64 {
     partners.iter().map(|(id, count)| count * (values[id.index()].value - library.get(*id).gibbs.value)).sum()
+}
+
+/// G°(T) − G°(298.15 K) of a species that its heat capacity carries, J/mol; zero for one that it does not. Unlike
+/// [`GibbsTable`] it is not held to the range of water.
+pub fn heat_change(species: &Species, t: Kelvin) -> f64 {
+    match &species.temperature {
+        TemperatureModel::HeatCapacity { capacity, transitions } => {
+            heat_capacity_change(*capacity, transitions, species.entropy.map_or(0.0, |s| s.value), t)
+        }
+        _ => 0.0,
+    }
 }
 
 /// ∫ of heat capacity and entropy from 298.15 K to T with changes of form on the way, J/mol.
@@ -163,7 +190,7 @@ fn model_uncertainty(model: &TemperatureModel, t: Kelvin) -> f64 {
         TemperatureModel::HeatCapacity { .. } | TemperatureModel::GasSolubility { .. } => 1.0 * away,
         TemperatureModel::MeasuredCurve { curve, .. } => {
             let beyond = (t.0 - curve.to_k).max(curve.from_k - t.0).max(0.0);
-            2.0 * away + 40.0 * beyond
+            2.0 * away + 20.0 * beyond
         }
         TemperatureModel::CorrespondencePrinciple(_) | TemperatureModel::ReactionEnthalpy { .. } => 8.0 * away,
         TemperatureModel::ConstantLogK { .. } => 50.0 * away,

@@ -4,7 +4,7 @@ use std::collections::BTreeSet;
 
 use super::results::number;
 use crate::library::record::Status;
-use crate::library::{Species, SpeciesId, TemperatureModel};
+use crate::library::{Change, Library, Species, SpeciesId, TemperatureModel};
 use crate::report::Subject;
 use crate::report::compose::heading;
 use crate::report::document::{Block, Column, Row, Table, Text, Tone};
@@ -69,7 +69,23 @@ pub fn data(subject: &Subject) -> Vec<Block> {
         }),
     ];
     blocks.push(sources(subject, &used));
+    blocks.extend(overlays(library));
     blocks
+}
+
+/// What the user's own files changed in the library.
+fn overlays(library: &Library) -> Vec<Block> {
+    if library.changes.is_empty() {
+        return Vec::new();
+    }
+    let line = |change: &Change| {
+        let verb = if change.overrides { "overrides" } else { "adds" };
+        Text::default().strong(change.file.as_str()).plain(format!(" {verb} {}", change.record))
+    };
+    vec![
+        Block::Heading { level: 2, text: "Records of the user's own".into() },
+        Block::Bullets(library.changes.iter().map(line).collect()),
+    ]
 }
 
 fn row(species: &Species, liquor: &crate::equilibrium::Liquor) -> Row {
