@@ -3,6 +3,7 @@
 use std::collections::{BTreeMap, BTreeSet, HashMap};
 
 use crate::chemistry::Element;
+use crate::equilibrium::liquor::is_solvent;
 use crate::library::record::{SpeciesRecord, State, Tabulated};
 use crate::library::{Library, Species};
 use crate::quantity::T_STANDARD;
@@ -107,7 +108,7 @@ pub fn sources(library: &Library) -> Vec<Check> {
 /// No two records of one formula, state and form; no dissolved species written twice with different water.
 pub fn duplicates(library: &Library) -> Vec<Check> {
     let mut exact: BTreeMap<(String, State, Option<String>), usize> = BTreeMap::new();
-    let mut anhydrous: BTreeMap<(Vec<(Element, i64)>, i32), Vec<&str>> = BTreeMap::new();
+    let mut anhydrous: BTreeMap<Anhydrous, Vec<&str>> = BTreeMap::new();
     for species in library.species() {
         *exact.entry((species.text.clone(), species.state, species.form.clone())).or_default() += 1;
         if species.state == State::Aqueous {
@@ -132,14 +133,15 @@ pub fn duplicates(library: &Library) -> Vec<Check> {
         .collect()
 }
 
-/// Composition with water taken out (oxygen as far as hydrogen pairs go), and charge: what two writings of one dissolved
-/// species share. Acids and bases of one another differ in charge and stay apart.
-fn without_water(species: &Species) -> (Vec<(Element, i64)>, i32) {
+/// What two writings of one dissolved species share: composition with water taken out (as far as pairs of hydrogen go), the
+/// states of what is not water, and the charge.
+type Anhydrous = (Vec<(Element, i64)>, i64, i32);
+
+fn without_water(species: &Species) -> Anhydrous {
     let (hydrogen, oxygen) = (species.formula.atoms("H"), species.formula.atoms("O"));
     let water = (hydrogen / 2.0).floor().min(oxygen);
-    // A species that is only hydrogen and oxygen, or holds a unit, is never the hydrate of another.
-    let units: f64 = species.constituents.iter().filter(|(c, _)| c.element().is_none()).map(|(_, n)| n * 1e6).sum();
-    let list = species
+    let thousandths = |n: f64| (n * 1000.0).round() as i64;
+    let composition = species
         .formula
         .composition
         .keys()
@@ -147,19 +149,15 @@ fn without_water(species: &Species) -> (Vec<(Element, i64)>, i32) {
             let own = match element.symbol() {
                 "H" => hydrogen - 2.0 * water,
                 "O" => oxygen - water,
-                symbol => species.formula.atoms(symbol) + units,
+                symbol => species.formula.atoms(symbol),
             };
-            (*element, (own * 1000.0).round() as i64)
+            (*element, thousandths(own))
         })
         .filter(|(_, n)| *n != 0)
         .collect();
-    let states: i64 = species.constituents.iter().map(|(c, n)| (c.oxidation() * c.oxidation() * n * 1e3) as i64).sum();
-    let mut list: Vec<(Element, i64)> = list;
-    // Isomers in other oxidation states (peroxide, thiosulfate) are told apart by their states.
-    if let Some(hydrogen) = Element::from_symbol("H").filter(|_| water == 0.0) {
-        list.push((hydrogen, states));
-    }
-    (list, species.formula.charge)
+    let own_states = species.constituents.iter().filter(|(c, _)| !is_solvent(c));
+    let states = own_states.map(|(c, n)| thousandths((c.oxidation().powi(2) + 1.0) * n)).sum();
+    (composition, states, species.formula.charge)
 }
 
 /// Every solid has somewhere to go: each of its elements and units has a dissolved species, and its parts sum to no charge.
