@@ -1,15 +1,15 @@
 //! Reads `materials/` and the report's fonts once, at build time, into compact files that the binary embeds.
 
-#[path = "src/report/fonts_build.rs"]
+#[path = "report/fonts_build.rs"]
 mod fonts_build;
-#[path = "src/library/materials_build.rs"]
+#[path = "library/materials_build.rs"]
 mod materials_build;
 
 use std::path::Path;
 use std::process::ExitCode;
 
 fn main() -> ExitCode {
-    println!("cargo::rerun-if-changed=build.rs");
+    println!("cargo::rerun-if-changed=src/build.rs");
     println!("cargo::rerun-if-changed=materials");
     println!("cargo::rerun-if-changed=templates/fonts");
     let out = std::env::var("OUT_DIR").unwrap_or_default();
