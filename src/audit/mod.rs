@@ -40,7 +40,7 @@ pub enum Rule {
     Limit,
     /// Names in one table exist in the other.
     Reference,
-    /// A reagent's molar mass agrees with what it delivers.
+    /// A reagent's molar mass agrees with what it delivers, which carries no net charge.
     Reagent,
 }
 
@@ -77,7 +77,7 @@ impl Rule {
             Self::Composition => "alloys sum to 100 %",
             Self::Limit => "limits agree and stand in order",
             Self::Reference => "names exist",
-            Self::Reagent => "reagents' molar mass",
+            Self::Reagent => "reagents' mass and charge",
         }
     }
 }

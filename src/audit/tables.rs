@@ -111,7 +111,7 @@ pub fn references(library: &Library) -> Vec<Check> {
     checks
 }
 
-/// What a reagent delivers weighs what the reagent weighs.
+/// What a reagent delivers weighs what the reagent weighs, and carries no net charge.
 pub fn reagents(library: &Library) -> Vec<Check> {
     /// Share by which the masses may differ: water of reaction and protons taken from water are allowed for below.
     const TOLERANCE: f64 = 0.01;
@@ -125,8 +125,12 @@ pub fn reagents(library: &Library) -> Vec<Check> {
             // Oxides and anhydrides take up water, hydrates give it off: whole waters, or the half that an oxide of one takes.
             let waters = ((delivered - reagent.molar_mass_g_mol) / water * 2.0).round() / 2.0;
             let miss = delivered - waters * water - reagent.molar_mass_g_mol;
-            let holds = miss.abs() <= TOLERANCE * reagent.molar_mass_g_mol.max(20.0);
-            let detail = format!("delivers {delivered:.2} g per {:.2} g of reagent", reagent.molar_mass_g_mol);
+            let charge_of =
+                |formula: &str| library.records(formula).first().map_or(0.0, |s| f64::from(s.formula.charge));
+            let charge: f64 = reagent.delivers.iter().map(|(formula, n)| n * charge_of(formula)).sum();
+            let holds = miss.abs() <= TOLERANCE * reagent.molar_mass_g_mol.max(20.0) && charge.abs() < 1e-9;
+            let mass = reagent.molar_mass_g_mol;
+            let detail = format!("delivers {delivered:.2} g and a charge of {charge} per {mass:.2} g of reagent");
             Check::new(Rule::Reagent, reagent.name.clone(), holds, detail, None)
         })
         .collect()
