@@ -141,3 +141,22 @@ fn closes(reaction: &str) -> bool {
     }
     charge.abs() < 1e-6 && atoms.values().all(|n| n.abs() < 1e-6)
 }
+
+/// Electrons close half-reactions only: what is written whole stays whole.
+#[test]
+fn whole_reactions_have_no_electron_left_over() {
+    for text in ["SCN^- + O2 -> SO4^2- + CN^-", "Au + CN^- + O2 -> Au(CN)2^-", "ClO^- + CN^- -> Cl^- + OCN^-"] {
+        let equation = named::reaction(text, library(), Medium::Acid).expect(text);
+        assert_eq!(equation.electrons, 0.0, "{}", equation.ascii(library()));
+    }
+}
+
+/// A reference zero cancels from a complexation and from nothing else.
+#[test]
+fn ligands_of_unknown_energy_cannot_be_burnt() {
+    for text in ["C6H5O7^3- + O2 -> CO2 + H2O", "CuC6H5O7^- + O2 -> Cu^2+ + CO2 + H2O"] {
+        let refused = named::reaction(text, library(), Medium::Acid).expect_err(text).to_string();
+        assert!(refused.contains("ligand only"), "{refused}");
+    }
+    assert!(named::reaction("Cu^2+ + C6H5O7^3- -> CuC6H5O7^-", library(), Medium::Acid).is_ok());
+}

@@ -8,8 +8,9 @@ use serde_json::json;
 use super::AtTemperature;
 use super::output::{self, Failure};
 use crate::chemistry::Medium;
-use crate::library::Library;
+use crate::library::{Library, Species, TemperatureModel};
 use crate::scenario;
+use crate::thermo::equation::Equation;
 use crate::thermo::named;
 
 #[derive(Debug, Args)]
@@ -56,7 +57,9 @@ pub fn run(args: &Reaction, library: &Library) -> Result<ExitCode, Failure> {
         values.delta_g.value * 1e-3,
         values.delta_g.standard_uncertainty * 1e-3
     ));
-    out.push_str(&format!("  ΔH°    {:>10.2} kJ/mol\n", values.delta_h * 1e-3));
+    let unmeasured = without_enthalpy(&equation, library);
+    let doubt = if unmeasured.is_empty() { "" } else { ", rough: no enthalpy is known for " };
+    out.push_str(&format!("  ΔH°    {:>10.2} kJ/mol{doubt}{}\n", values.delta_h * 1e-3, unmeasured.join(", ")));
     out.push_str(&format!("  log K  {:>10.2} ± {:.2}\n", values.log_k.value, values.log_k.standard_uncertainty));
     if let Some(e) = values.potential {
         out.push_str(&format!("  E°     {:>10.4} ± {:.4} V, {electrons} electrons\n", e.value, e.standard_uncertainty));
@@ -66,8 +69,16 @@ pub fn run(args: &Reaction, library: &Library) -> Result<ExitCode, Failure> {
     Ok(ExitCode::SUCCESS)
 }
 
+/// Species of the equation whose temperature model assumes an enthalpy.
+fn without_enthalpy(equation: &Equation, library: &Library) -> Vec<String> {
+    let species = equation.terms.iter().map(|(id, _)| library.get(*id));
+    let assumed =
+        |s: &&Species| matches!(s.temperature, TemperatureModel::ConstantGibbs | TemperatureModel::ConstantLogK { .. });
+    species.filter(assumed).map(Species::label).collect()
+}
+
 /// One line for each species: its Gibbs energy, source and temperature model.
-pub fn sources(equation: &crate::thermo::equation::Equation, library: &Library) -> String {
+pub fn sources(equation: &Equation, library: &Library) -> String {
     let mut out = String::new();
     for (id, _) in &equation.terms {
         let species = library.get(*id);

@@ -87,8 +87,7 @@ pub fn run(args: &Show, library: &Library) -> Result<ExitCode, Failure> {
     for (key, other) in &others {
         out.push_str(&format!("{key}\n"));
         for (field, value) in other.as_object().into_iter().flatten().filter(|(_, v)| !is_empty(v)) {
-            let text = value.as_str().map_or_else(|| value.to_string(), str::to_owned);
-            out.push_str(&format!("  {field:<34}{text}\n"));
+            out.push_str(&format!("  {field:<34}{}\n", in_words(value)));
         }
     }
     match found.as_slice() {
@@ -101,6 +100,19 @@ pub fn run(args: &Show, library: &Library) -> Result<ExitCode, Failure> {
 
 fn is_empty(value: &Value) -> bool {
     value.is_null() || value.as_array().is_some_and(Vec::is_empty) || value.as_object().is_some_and(|o| o.is_empty())
+}
+
+/// A field of a record on one line, without the marks of the file format.
+fn in_words(value: &Value) -> String {
+    match value {
+        Value::String(text) => text.clone(),
+        Value::Array(items) => items.iter().map(in_words).collect::<Vec<_>>().join("; "),
+        Value::Object(fields) => match fields.get("text") {
+            Some(text) => in_words(text),
+            None => fields.iter().map(|(k, v)| format!("{k} {v}")).collect::<Vec<_>>().join(", "),
+        },
+        other => other.to_string(),
+    }
 }
 
 /// Records of the other tables that a name, synonym, number or CAS number finds.
@@ -193,6 +205,7 @@ fn record(s: &Species, library: &Library, table: &GibbsTable) -> Value {
         "citation": library.sources.get(&s.source),
         "status": status_name(s.status),
         "note": s.note,
+        "rejected": s.rejected,
     })
 }
 
@@ -236,6 +249,11 @@ fn plain(s: &Species, library: &Library, table: &GibbsTable) -> String {
     out.push_str(&format!("  {} [{}] {citation}\n", status_name(s.status), s.source));
     if let Some(note) = &s.note {
         out.push_str(&format!("  note: {note}\n"));
+    }
+    for other in &s.rejected {
+        let g = other.g_kj_mol.map(|g| format!("ΔfG° {g} kJ/mol")).into_iter();
+        let values: Vec<String> = g.chain(other.log_k.map(|k| format!("log K {k}"))).collect();
+        out.push_str(&format!("  not taken: {} [{}]: {}\n", values.join(", "), other.source, other.why));
     }
     out
 }

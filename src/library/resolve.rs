@@ -116,6 +116,7 @@ fn one(
         source: record.source.clone(),
         status: record.status,
         note: record.note.clone(),
+        rejected: record.rejected.clone(),
     })
 }
 

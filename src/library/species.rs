@@ -3,7 +3,7 @@
 use crate::chemistry::{Constituent, Formula};
 use crate::quantity::Estimate;
 
-use super::record::{Curve, HeatCapacity, IonClass, State, Status, Transition};
+use super::record::{Curve, HeatCapacity, IonClass, Rejected, State, Status, Transition};
 
 /// Place of a species in the library; only the library hands these out.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash, PartialOrd, Ord)]
@@ -84,9 +84,17 @@ pub struct Species {
     pub source: String,
     pub status: Status,
     pub note: Option<String>,
+    /// Values considered and not taken, with the reason.
+    pub rejected: Vec<Rejected>,
 }
 
 impl Species {
+    /// True for an ion that the library holds as a ligand only: its G° is a reference zero, and differences alone count.
+    pub fn is_ligand_reference(&self) -> bool {
+        let one_unit = matches!(self.constituents.as_slice(), [(Constituent::Unit { .. }, _)]);
+        one_unit && self.gibbs.value == 0.0 && self.own_uncertainty == 0.0
+    }
+
     /// True for pure solids and liquids, whose activity is one.
     pub fn is_condensed(&self) -> bool {
         matches!(self.state, State::Crystal | State::Amorphous | State::Liquid)

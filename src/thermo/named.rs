@@ -4,7 +4,9 @@ use std::collections::BTreeMap;
 
 use thiserror::Error;
 
-use crate::chemistry::{self, BalanceError, Element, Formula, Medium, ReactionError, ReactionText, StateSuffix, Term};
+use crate::chemistry::{
+    self, BalanceError, Constituent, Element, Formula, Medium, ReactionError, ReactionText, StateSuffix, Term,
+};
 use crate::library::record::State;
 use crate::library::{Library, NotFound, Species, SpeciesId};
 use crate::quantity::{Estimate, FARADAY, Kelvin};
@@ -28,6 +30,10 @@ pub enum NamedError {
     Couple(String),
     #[error("the coefficients given in `{text}` do not balance; without them it is {balanced}")]
     Coefficients { text: String, balanced: String },
+    #[error(
+        "`{0}` is held as a ligand only: its Gibbs energy is a reference zero, so a reaction that breaks it up has no energy here"
+    )]
+    Ligand(String),
     #[error(transparent)]
     Range(#[from] RangeError),
 }
@@ -60,7 +66,24 @@ pub fn reaction(text: &str, library: &Library, medium: Medium) -> Result<Equatio
             _ => add(&mut equation.terms, library.find(&formula.canonical())?.id, *n),
         }
     }
+    keeps_ligands(&equation, library)?;
     Ok(equation)
+}
+
+/// Organic ligands whose Gibbs energy is a reference must leave a reaction as they entered it.
+fn keeps_ligands(equation: &Equation, library: &Library) -> Result<(), NamedError> {
+    let mut units: BTreeMap<String, f64> = BTreeMap::new();
+    for (id, n) in &equation.terms {
+        for (constituent, count) in &library.get(*id).constituents {
+            if let Constituent::Unit { text, .. } = constituent {
+                *units.entry(text.clone()).or_default() += n * count;
+            }
+        }
+    }
+    let broken = units
+        .into_iter()
+        .find(|(text, n)| n.abs() > 1e-9 && library.records(text).first().is_some_and(|s| s.is_ligand_reference()));
+    broken.map_or(Ok(()), |(text, _)| Err(NamedError::Ligand(text)))
 }
 
 /// The species of a term; none for the electron.
@@ -84,7 +107,10 @@ fn coefficients(text: &str, parsed: &ReactionText, medium: Medium) -> Result<Vec
         .collect();
     let given: Vec<f64> = terms().map(|t| t.coefficient.map_or(1.0, ratio)).collect();
     let some_given = terms().any(|t| t.coefficient.is_some());
-    match chemistry::balance_with(&left, &right, &helpers) {
+    // Electrons close a half-reaction only: a whole reaction that water and its ions close has none left over.
+    let without: Vec<Formula> = helpers.iter().filter(|h| !h.is_electron()).cloned().collect();
+    let whole = chemistry::balance_with(&left, &right, &without);
+    match whole.or_else(|_| chemistry::balance_with(&left, &right, &helpers)) {
         Ok(balanced) => {
             let plain: Vec<(Formula, f64)> =
                 balanced.coefficients.iter().map(|(f, n)| (f.clone(), *n as f64)).collect();
@@ -180,6 +206,7 @@ pub fn couple(text: &str, library: &Library, medium: Medium) -> Result<(SpeciesI
             equation.terms.push((species.id, n));
         }
     }
+    keeps_ligands(&equation, library)?;
     Ok((ox.id, red.id, equation))
 }
 
