@@ -52,6 +52,19 @@ fn liquor(ph: f64, dissolved: &str, rest: &str) -> String {
     )
 }
 
+/// Silence would read as resistance. That tantalum rests on its oxide and that fluoride breaks it: common practice, no source.
+#[test]
+fn solid_that_cannot_be_screened_is_said_to_be_so() {
+    let part = "[[metal]]\nname = \"patch\"\nmaterial = \"Ta\"\nduty = \"resist\"\n";
+    for (name, fluoride, attention) in [("ta", "", "note"), ("ta-f", ", \"F^-\" = \"0.01 mol/L\"", "review")] {
+        let dissolved = format!("\"Fe^3+\" = \"0.05 mol/L\", \"SO4^2-\" = \"0.3 mol/L\"{fluoride}");
+        let report = report(name, &liquor(1.5, &dissolved, part));
+        let found = about(&report, "dissolution", "patch");
+        assert_eq!(found.len(), 1, "{found:?}");
+        assert_eq!((&found[0]["verdict"], &found[0]["attention"]), (&"not assessed".into(), &attention.into()));
+    }
+}
+
 const GOLD: &str = "[[metal]]\nname = \"gold\"\nmaterial = \"Au\"\nduty = \"dissolve\"\namount = \"2 g/m3\"\n";
 
 /// Copper(I) disproportionates in sulfate, log K of 2 Cu⁺ = Cu + Cu²⁺ near 6.2 (CRC and Bratsch potentials, 0.521 and 0.153 V).

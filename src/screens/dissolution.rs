@@ -28,7 +28,10 @@ pub fn screen(setting: &Setting) -> Vec<Finding> {
     for solid in &setting.case.solids {
         let mut own: Vec<Finding> = without_electrons(setting, solid).into_iter().collect();
         own.extend(setting.drivers.iter().filter_map(|d| Pairing::new(setting, solid, d)).map(|p| p.finding()));
-        settle(solid, &mut own);
+        match own.as_mut_slice() {
+            [] => own.extend(without_product(setting, solid)),
+            some => settle(solid, some),
+        }
         findings.extend(own);
     }
     findings
@@ -75,6 +78,31 @@ pub fn leading_path(liquor: &Liquor, solid: &Solid, e: f64, products: Products) 
         .or_else(|| by(preferred))
         .or(all.first())
         .cloned()
+}
+
+/// A solid of which the library holds no dissolved form: silence would read as resistance, so it is said.
+fn without_product(setting: &Setting, solid: &Solid) -> Option<Finding> {
+    let liquor = &setting.liquor;
+    let e = setting.drivers.first().map_or(0.0, |d| d.potential.value);
+    if leading_path(liquor, solid, e, Products::Dissolved).is_some() {
+        return None;
+    }
+    let record = liquor.library.get(solid.material.species());
+    let film = film(setting, solid, e);
+    let unbroken = film.as_ref().is_some_and(|f| f.holds() && f.broken_by.is_empty());
+    let attention = if unbroken { Attention::Note } else { Attention::Review };
+    let practice = film.as_ref().map_or(String::new(), |f| format!(" Its film is {}; {}.", f.name(liquor), f.words()));
+    let name = text::capital(&solid.name);
+    let statement =
+        format!("{name}: not assessed, because the library holds no dissolved form of {}.{practice}", record.pretty());
+    let question = if solid.duty == Duty::Dissolve { Question::Leaching } else { Question::Dissolution };
+    let mut finding = Finding::new(question, &solid.name, None, Verdict::NotAssessed, attention, statement);
+    finding.reasons.push("No driving force can be given: resistance rests on practice and on tests alone.".into());
+    finding.reasons.extend(film.iter().flat_map(Film::reasons));
+    finding.reasons.extend(alloy_reasons(solid));
+    finding.sources.extend(film.as_ref().and_then(Film::source));
+    finding.cautions.push("general".into());
+    Some(finding)
 }
 
 /// A compound that dissolves by acid, base or complexing alone.
